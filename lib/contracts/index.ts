@@ -5,3 +5,4 @@ export * from './judge';
 export * from './lay-out';
 export * from './model';
 export * from './predict';
+export * from './problem';

@@ -61,9 +61,7 @@ export const layOutRequest = z.strictObject({
   rigs: z.array(layOutRig),
   people: z.array(layOutPerson),
   closed: z.array(z.strictObject(span)).optional(),
-  busy: z
-    .array(z.strictObject({ rig: id.optional(), person: id.optional(), ...span }))
-    .optional(),
+  busy: z.array(z.strictObject({ rig: id.optional(), person: id.optional(), ...span })).optional(),
   seed: z.number().int().min(0).default(1),
   effort: z.number().int().min(0).max(1_000_000).default(2000),
 });

@@ -117,4 +117,3 @@ export const control = z
   .strictObject({ symbol: symbolName, from: finite, to: finite, doseMap: doseMap.optional() })
   .refine((c) => c.from < c.to, { message: 'from must lie below to', path: ['from'] });
 export type Control = z.infer<typeof control>;
-

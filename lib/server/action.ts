@@ -1,12 +1,12 @@
 import type { z } from 'zod';
 import type { Db } from '@/db/client';
+import type { ActionResult } from '@/lib/contracts';
 import { type Action, type Allowance, demand } from './authorise';
 import { database } from './database';
-import { type Problem, problemOf } from './errors';
+import { problemOf } from './errors';
 import { log } from './log';
 import { type Member, requireMember } from './member';
 
-export type ActionResult<T> = { ok: true; value: T } | { ok: false; problem: Problem };
 export type ActionContext = {
   db: Db;
   member: Member;

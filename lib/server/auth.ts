@@ -28,7 +28,9 @@ async function signIn(raw: unknown) {
   const allowed = await limitAttempts(database(), `sign-in:${email}`, 10, 15 * 60_000);
   if (!allowed) throw new Error('too-many');
   const [found] = await database().select().from(user).where(eq(user.email, email)).limit(1);
-  const matches = await verify(found?.passwordHash ?? (await decoyHash()), password).catch(() => false);
+  const matches = await verify(found?.passwordHash ?? (await decoyHash()), password).catch(
+    () => false,
+  );
   if (!found || !matches) return null;
   return { id: found.id, name: found.name, email: found.email, version: found.sessionVersion };
 }

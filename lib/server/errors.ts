@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { EngineError } from '@/lib/contracts';
+import { EngineError, type Problem, type ProblemCode } from '@/lib/contracts';
 
 /** One table from code to HTTP status. */
 export const statusOf = {
@@ -13,11 +13,7 @@ export const statusOf = {
   'too-many': 429,
   unavailable: 503,
   internal: 500,
-} as const;
-export type ProblemCode = keyof typeof statusOf;
-
-/** What a person is told: what is wrong, where, and how to mend it. */
-export type Problem = { code: ProblemCode; message: string; at?: string; mend?: string };
+} as const satisfies Record<ProblemCode, number>;
 
 export class AppError extends Error {
   constructor(

@@ -57,9 +57,7 @@ export async function claim(db: Db, owner: string, now: Date): Promise<Job | nul
     const [row] = await tx
       .select()
       .from(job)
-      .where(
-        or(eq(job.state, 'queued'), and(eq(job.state, 'running'), lt(job.leaseUntil, now))),
-      )
+      .where(or(eq(job.state, 'queued'), and(eq(job.state, 'running'), lt(job.leaseUntil, now))))
       .orderBy(asc(job.createdAt))
       .limit(1)
       .for('update', { skipLocked: true });

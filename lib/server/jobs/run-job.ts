@@ -56,12 +56,7 @@ function workInThread(db: Db, job: Job, owner: string, threadFile: string): Prom
 }
 
 /** Runs a claimed job to its end: result and end of job are stored in one transaction. */
-export async function runJob(
-  db: Db,
-  job: Job,
-  owner: string,
-  threadFile: string,
-): Promise<void> {
+export async function runJob(db: Db, job: Job, owner: string, threadFile: string): Promise<void> {
   const worked = await workInThread(db, job, owner, threadFile);
   if (worked.outcome === 'taken away') return;
   if (worked.outcome === 'failed') {
