@@ -30,7 +30,13 @@ export interface CompiledSystem {
   /** ∂τ_k/∂p_j into `out`, length K. */
   delayDerivative(p: Float64Array, j: number, out: Float64Array): void;
   /** Second derivatives as a directional form: Σ ∂²f/∂z_a∂z_b u_a v_b into `out`, length n. */
-  second(z: Float64Array, p: Float64Array, u: Float64Array, v: Float64Array, out: Float64Array): void;
+  second(
+    z: Float64Array,
+    p: Float64Array,
+    u: Float64Array,
+    v: Float64Array,
+    out: Float64Array,
+  ): void;
   /** Third derivatives as a directional form: Σ ∂³f/∂z_a∂z_b∂z_c u_a v_b w_c into `out`, length n. */
   third(
     z: Float64Array,
