@@ -415,7 +415,6 @@ CREATE TABLE `outbox` (
 	`due_at` datetime(3) NOT NULL,
 	`state` varchar(20) NOT NULL DEFAULT 'waiting',
 	`attempts` int NOT NULL DEFAULT 0,
-	`lease_until` datetime(3),
 	`message_id` varchar(200),
 	`error` text,
 	`sent_at` datetime(3),

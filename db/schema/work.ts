@@ -69,7 +69,8 @@ export const auditEvent = mysqlTable(
   (t) => [index('audit_lab_at').on(t.labId, t.at)],
 );
 
-export const outboxStates = ['waiting', 'sending', 'sent', 'dead'] as const;
+/** A waiting row is claimed by its row lock alone, so a crash gives it back by itself. */
+export const outboxStates = ['waiting', 'sent', 'dead'] as const;
 export type OutboxKind =
   | 'reminder'
   | 'assigned'
@@ -103,7 +104,6 @@ export const outbox = mysqlTable(
       .notNull()
       .default('waiting'),
     attempts: int('attempts').notNull().default(0),
-    leaseUntil: instant('lease_until'),
     messageId: varchar('message_id', { length: 200 }),
     error: text('error'),
     sentAt: instant('sent_at'),

@@ -1,0 +1,2 @@
+/** Rises whenever an answer could change. */
+export const engineVersion = '1';
