@@ -9,7 +9,7 @@ export type Mail = {
   ical?: { method: string; content: string };
 };
 
-const escape = (s: string) =>
+const escapeHtml = (s: string) =>
   s
     .replaceAll('&', '&amp;')
     .replaceAll('<', '&lt;')
@@ -123,7 +123,7 @@ export function compose(facts: MailFacts, base: string, now: Date): Mail {
   ];
   const html = `<div style="font-family:sans-serif;font-size:15px;line-height:22px">${body
     .map((l) => {
-      const safe = escape(l);
+      const safe = escapeHtml(l);
       if (/^\s*https?:\/\//.test(l)) return `<a href="${safe.trim()}">${safe.trim()}</a><br>`;
       return `${safe.replace(/^ {2}/, '&emsp;')}<br>`;
     })

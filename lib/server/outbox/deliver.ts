@@ -27,7 +27,7 @@ export const messageIdOf = (slot: string) =>
 async function expired(tx: Transaction, row: OutboxRow, now: Date): Promise<string | null> {
   if (row.kind !== 'reminder' || !row.sessionId) return null;
   const [s] = await tx.select().from(session).where(eq(session.id, row.sessionId)).for('share');
-  if (!s || s.state !== 'planned') return 'the session is no longer planned';
+  if (s?.state !== 'planned') return 'the session is no longer planned';
   if (s.sequence !== row.sequence) return 'the session was moved';
   if (s.personId !== row.recipientId) return 'the session belongs to somebody else now';
   if (s.startsAt.getTime() < now.getTime()) return 'the session had begun';
