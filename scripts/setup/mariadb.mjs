@@ -14,7 +14,14 @@ import { tmpdir, userInfo } from 'node:os';
 import { join } from 'node:path';
 import { freePort } from './ports.mjs';
 import { Problem } from './problem.mjs';
-import { endProcess, endsWithParent, findProcesses, findProgram, run } from './processes.mjs';
+import {
+  endProcess,
+  endsWithParent,
+  findProcesses,
+  findProgram,
+  isEnding,
+  run,
+} from './processes.mjs';
 
 /** Longest path of a Unix socket that Linux accepts. */
 const socketPathLimit = 107;
@@ -59,7 +66,7 @@ export async function startMariadb(folder, settings) {
     mkdirSync(path, { recursive: true, mode: 0o700 });
     chmodSync(path, 0o700);
   }
-  await endOrphans(places);
+  await endOrphanMariadb(folder);
   const port = await freePort(settings.port);
   writeFileSync(places.options, optionsText(places, port, settings), { mode: 0o600 });
   const firstWords = join(folder, 'grants.sql');
@@ -88,7 +95,8 @@ export async function stopMariadb({ child, places }) {
 }
 
 /** Shuts down a server that a killed predecessor left running on this folder. */
-async function endOrphans(places) {
+export async function endOrphanMariadb(folder) {
+  const places = mariadbPlaces(folder);
   for (const pid of findProcesses(['mariadbd', `--defaults-file=${places.options} `])) {
     await endProcess(pid, { patienceSeconds: stopPatienceSeconds });
   }
@@ -118,6 +126,7 @@ async function initialise(places) {
 function spawnServer(places, firstWords) {
   const program = findProgram('mariadbd');
   if (program === null) throw new Problem('mariadbd is missing (mariadb-server-core).');
+  if (isEnding()) throw new Problem('Ending.');
   const log = openSync(places.log, 'a', 0o600);
   const args = [`--defaults-file=${places.options}`, `--init-file=${firstWords}`];
   const [command, words] = endsWithParent(program, args);

@@ -4,28 +4,61 @@ import { Problem } from './problem.mjs';
 
 const sleep = (milliseconds) => new Promise((resolve) => setTimeout(resolve, milliseconds));
 
+let ending = false;
+const commands = new Set();
+
+/** Whether this process is on its way out, and starts nothing any more. */
+export function isEnding() {
+  return ending;
+}
+
+/** From now on nothing is started; the commands under way are asked to end. */
+export function endCommands() {
+  ending = true;
+  for (const child of commands) child.kill('SIGTERM');
+}
+
 /**
  * Runs a command to its end.
  *
  * @param {string} command
  * @param {string[]} args
- * @param {{ cwd?: string, env?: NodeJS.ProcessEnv, logFile?: string, input?: string, signal?: AbortSignal }} options
- *   with `logFile` the output goes there; otherwise it is shown.
+ * @param {{ cwd?: string, env?: NodeJS.ProcessEnv, logFile?: string, finishes?: boolean }} options
+ *   with `logFile` the output goes there, otherwise it is shown; with `finishes` the command is let
+ *   to its end even when we are ended.
  * @returns {Promise<number>} exit status; 127 when the command cannot be started
  */
-export function run(command, args, options = {}) {
-  const output = options.logFile === undefined ? null : openSync(options.logFile, 'a', 0o600);
-  const child = spawn(command, args, {
-    cwd: options.cwd,
-    env: options.env ?? process.env,
-    stdio: ['ignore', output ?? 'inherit', output ?? 'inherit'],
-    signal: options.signal,
-    killSignal: 'SIGTERM',
+export async function run(command, args, options = {}) {
+  const output = options.logFile === undefined ? 'inherit' : openSync(options.logFile, 'a', 0o600);
+  try {
+    return (await runTo(command, args, options, output)).status;
+  } finally {
+    if (output !== 'inherit') closeSync(output);
+  }
+}
+
+/** Runs a command and gives what it wrote; its complaints are shown. */
+export function runForOutput(command, args, options = {}) {
+  return runTo(command, args, options, 'pipe');
+}
+
+function runTo(command, args, { cwd, env, finishes = false }, output) {
+  if (ending) throw new Problem('Ending.');
+  const [program, words] = finishes ? [command, args] : endsWithParent(command, args);
+  const child = spawn(program, words, {
+    cwd,
+    env: env ?? process.env,
+    stdio: ['ignore', output, output === 'pipe' ? 'inherit' : output],
+  });
+  if (!finishes) commands.add(child);
+  let written = '';
+  child.stdout?.setEncoding('utf8').on('data', (part) => {
+    written += part;
   });
   return new Promise((resolve) => {
     const end = (status) => {
-      if (output !== null) closeSync(output);
-      resolve(status);
+      commands.delete(child);
+      resolve({ status, output: written });
     };
     child.once('error', () => end(127));
     child.once('close', (code) => end(code ?? 1));
