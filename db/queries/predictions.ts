@@ -1,4 +1,5 @@
 import { and, desc, eq, inArray, sql } from 'drizzle-orm';
+import { v7 as uuid } from 'uuid';
 import type { Control, Cycle, PredictedOnset } from '@/lib/contracts';
 import type { Conn } from '../client';
 import { job, predictedOnset, prediction, systemVersion, user } from '../schema';
@@ -55,7 +56,7 @@ export async function insertPrediction(
   if (onsets.length === 0) return;
   await tx.insert(predictedOnset).values(
     onsets.map((onset, index) => ({
-      id: crypto.randomUUID(),
+      id: uuid(),
       labId: row.labId,
       predictionId: row.id,
       ordinal: index + 1,

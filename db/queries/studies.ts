@@ -248,3 +248,14 @@ export async function newestVerdicts(conn: Conn, { labId, studyIds }: Wanted) {
     .orderBy(runVerdict.createdAt, runVerdict.id);
   return [...new Map(rows.map((row) => [row.runId, row])).values()];
 }
+
+export async function insertStudy(tx: Conn, row: typeof study.$inferInsert): Promise<void> {
+  await tx.insert(study).values(row);
+}
+
+export async function updateStudy(
+  tx: Conn,
+  wanted: { labId: string; studyId: string; set: Partial<typeof study.$inferInsert> },
+): Promise<void> {
+  await tx.update(study).set(wanted.set).where(inLab(wanted.labId, wanted.studyId));
+}
