@@ -1,0 +1,135 @@
+import type { Job, Visit } from './problem';
+import type { Attendance, State } from './state';
+
+/** How the search breaks ties; the defaults take the least loaded person. */
+export type Taste = { noise: (person: number) => number };
+export const LEAST_LOADED: Taste = { noise: () => 0 };
+
+const TRIES = 40;
+const COMBINATIONS = 8;
+
+/**
+ * The earliest moment in [t, limit] at which enough able people can attend the visit together,
+ * people already promised to it (`taken`) counted as they stand. Infinity when there is none.
+ */
+export function nextStaffed(
+  state: State,
+  job: Job,
+  visit: Visit,
+  t: number,
+  limit: number,
+): number {
+  const { people } = state.problem;
+  let s = t;
+  while (s <= limit) {
+    const times: number[] = [];
+    for (const p of job.able) {
+      state.work++;
+      const at = people[p]!.nextFree(s, visit.duration, visit.round, limit);
+      if (at === s && visit.people === 1) return s;
+      if (at !== Number.POSITIVE_INFINITY) times.push(at);
+    }
+    if (times.length < visit.people) return Number.POSITIVE_INFINITY;
+    times.sort((a, b) => a - b);
+    const next = times[visit.people - 1]!;
+    if (next === s) return s;
+    s = next;
+  }
+  return Number.POSITIVE_INFINITY;
+}
+
+type Choice = { people: number[]; from: number };
+
+function ranked(state: State, visit: Visit, from: number, able: number[], taste: Taste): number[] {
+  const to = from + visit.duration;
+  const key = (p: number) => {
+    const book = state.problem.people[p]!;
+    // Whoever is in the room for this round already does the sister vessel as well.
+    const shared = book.sharesRound(from, to, visit.round) ? 0 : 1;
+    return { p, shared, load: book.load + taste.noise(p) };
+  };
+  return able
+    .map(key)
+    .sort((a, b) => a.shared - b.shared || a.load - b.load || a.p - b.p)
+    .map((k) => k.p);
+}
+
+/** The first few ways to pick `n` of the ranked people, best ranked first. */
+function combinations(people: readonly number[], n: number): number[][] {
+  const out: number[][] = [];
+  const pick = (from: number, chosen: number[]) => {
+    if (out.length >= COMBINATIONS) return;
+    if (chosen.length === n) {
+      out.push(chosen);
+      return;
+    }
+    for (let i = from; i <= people.length - (n - chosen.length); i++) {
+      pick(i + 1, [...chosen, people[i]!]);
+    }
+  };
+  pick(0, []);
+  return out;
+}
+
+function choices(state: State, job: Job, visit: Visit, start: number, taste: Taste): Choice[] {
+  const first = start + visit.at;
+  const last = first + visit.late;
+  const { people } = state.problem;
+  const when = job.able.map((p) => {
+    state.work++;
+    return people[p]!.nextFree(first, visit.duration, visit.round, last);
+  });
+  // Two people may be free together only at a moment that is neither one's first.
+  const joint = visit.people > 1 ? [nextStaffed(state, job, visit, first, last)] : [];
+  const moments = [...new Set([...joint, ...when])].filter(Number.isFinite).sort((a, b) => a - b);
+  const out: Choice[] = [];
+  for (const from of moments) {
+    const free = job.able.filter(
+      (p, i) =>
+        when[i] === from ||
+        (when[i]! < from && people[p]!.nextFree(from, visit.duration, visit.round, from) === from),
+    );
+    if (free.length < visit.people) continue;
+    // One alone may come later than another could: offered after those who can come at once.
+    const fresh =
+      visit.people === 1 ? free.filter((p) => when[job.able.indexOf(p)] === from) : free;
+    for (const set of combinations(ranked(state, visit, from, fresh, taste), visit.people)) {
+      out.push({ people: set, from });
+    }
+  }
+  return out;
+}
+
+/**
+ * People and moments for every visit of a booking that starts at `start`, or null. Visits are
+ * taken in order of time with a bounded backtrack, because one visit uses up rest, minutes and
+ * presence that the next one needs.
+ */
+export function staffVisits(
+  state: State,
+  job: Job,
+  start: number,
+  latestEnd: number,
+  taste: Taste,
+): Attendance[] | null {
+  const { people } = state.problem;
+  const done: Attendance[] = [];
+  let tries = 0;
+  const descend = (k: number): boolean => {
+    const visit = job.visits[k];
+    if (!visit) return true;
+    for (const choice of choices(state, job, visit, start, taste)) {
+      const to = choice.from + visit.duration;
+      if (to > latestEnd) continue;
+      if (tries++ >= TRIES + job.visits.length) return false;
+      for (const p of choice.people) people[p]!.add(choice.from, to, visit.round);
+      const fine = descend(k + 1);
+      for (const p of choice.people) people[p]!.remove(choice.from, to, visit.round);
+      if (!fine) continue;
+      done.push({ visit: visit.index, people: choice.people, from: choice.from, to });
+      return true;
+    }
+    return false;
+  };
+  return descend(0) ? done.sort((a, b) => a.visit - b.visit) : null;
+}
