@@ -1,0 +1,3 @@
+export { controlClass, describedBy, Field, type FieldProps } from './field';
+export { FormProblem, type Problem } from './form-problem';
+export { Check, FieldGroup, NumberField, type Option, Select, TextArea, TextField } from './inputs';
