@@ -59,6 +59,9 @@ export const seriesVersion = mysqlTable(
     decision: text('decision'),
     /** The approved version whose envelope covers this one. */
     inheritedFrom: id('inherited_from'),
+    /** What the last lay-out could not place, and why, in words for the head. */
+    unplaced: shape<{ what: string; reason: string }[]>('unplaced'),
+    laidOutAt: instant('laid_out_at'),
     /** Raised at every change, so that two people at once are told. */
     revision: int('revision').notNull().default(1),
   },
