@@ -72,6 +72,7 @@ export const decisionForm = z.strictObject({
 export const layOutForm = z.strictObject({
   studyId: id,
   seriesVersionId: id,
+  revision: z.number().int(),
   notBefore: z.iso.datetime({ offset: true }),
   notAfter: z.iso.datetime({ offset: true }),
 });
