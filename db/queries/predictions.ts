@@ -1,6 +1,6 @@
 import { and, desc, eq, inArray, sql } from 'drizzle-orm';
 import { v7 as uuid } from 'uuid';
-import type { Control, Cycle, PredictedOnset } from '@/lib/contracts';
+import type { Control, Cycle, PredictedOnset, SystemModel } from '@/lib/contracts';
 import type { Conn } from '../client';
 import { job, predictedOnset, prediction, systemVersion, user } from '../schema';
 
@@ -76,9 +76,8 @@ export type PredictionOutline = {
   studyId: string;
   systemNumber: number;
   systemVersionId: string;
+  model: SystemModel;
   control: Control;
-  timeUnit: string;
-  controlUnit: string | null;
   cycles: Cycle[];
   onsets: {
     value: number;
@@ -127,13 +126,11 @@ export async function predictionOutlines(
     .from(predictedOnset)
     .where(and(eq(predictedOnset.labId, labId), inArray(predictedOnset.predictionId, newest)))
     .orderBy(predictedOnset.ordinal);
-  for (const { model, cycles, coexistence, ...row } of rows) {
+  for (const { cycles, coexistence, ...row } of rows) {
     const windows = parsed<PredictedOnset['coexistence'][] | null>(coexistence) ?? [];
     const own = onsets.filter((o) => o.predictionId === row.predictionId);
     outlines.set(row.studyId, {
       ...row,
-      timeUnit: model.timeUnit,
-      controlUnit: model.parameters.find((p) => p.symbol === row.control.symbol)?.unit ?? null,
       cycles: parsed<Cycle[] | null>(cycles) ?? [],
       onsets: own.map((o, i) => ({ ...o, coexistence: windows[i] ?? null })),
     });
