@@ -15,6 +15,7 @@ import { type Analysis, analyse, analysisNotes, type Range } from './onset/analy
 import { inspectCrossing } from './onset/locate';
 import { criticalityAt } from './onset/lyapunov';
 import type { Onset } from './onset/scan';
+import { propagate } from './uncertainty/propagate';
 
 export interface PredictHooks {
   progress?(done: number, total: number, what: string): void;
@@ -35,8 +36,13 @@ export function predict(request: PredictRequest, hooks: PredictHooks = {}): Pred
   hooks.progress?.(0, request.draws, 'following the steady state');
   const analysis = analyse(system, system.values, range, system.start, hooks.cancelled);
   const notes: Note[] = analysisNotes(analysis);
-  const onsets = analysis.scan.onsets.map((o) => describe(analysis, o, request));
+  const plain = analysis.scan.onsets.map((o) => describeOnset(analysis, o, request));
+  const spreads =
+    request.draws > 0 ? propagate(system, request, range, analysis, hooks) : plain.map(() => null);
+  const onsets = plain.map((o, k) => ({ ...o, spread: spreads[k] ?? null }));
+  notes.push(...spreadNotes(onsets));
   const cycles: Cycle[] = [];
+  hooks.progress?.(request.draws, request.draws, 'done');
   return { onsets, branch: branchAnswer(analysis), cycles, notes };
 }
 
@@ -56,7 +62,7 @@ function rangeOf(system: CompiledSystem, request: PredictRequest): Range {
   return { controlIndex, from, to };
 }
 
-function describe(analysis: Analysis, onset: Onset, request: PredictRequest): PredictedOnset {
+function describeOnset(analysis: Analysis, onset: Onset, request: PredictRequest): PredictedOnset {
   const { context } = analysis;
   const { variables } = context.problem.system;
   inspectCrossing(context, onset);
@@ -76,6 +82,30 @@ function describe(analysis: Analysis, onset: Onset, request: PredictRequest): Pr
     dose: controlToDose(request.control.doseMap, onset.control),
     spread: null,
   };
+}
+
+function spreadNotes(onsets: readonly PredictedOnset[]): Note[] {
+  const notes: Note[] = [];
+  for (const o of onsets) {
+    const at = `the onset at ${Number(o.value.toPrecision(6))}`;
+    if (o.spread && o.spread.none > 0) {
+      const share = Number((100 * o.spread.none).toPrecision(3));
+      notes.push({
+        code: 'draws-without-onset',
+        text: `${share} % of the draws have no counterpart of ${at} within the range`,
+      });
+    }
+    if (o.dose === null) {
+      notes.push({ code: 'dose-unreachable', text: `no dose of the dose map reaches ${at}` });
+    } else if (o.spread?.doses.some((d) => d === null)) {
+      const missing = o.spread.doses.filter((d) => d === null).length;
+      notes.push({
+        code: 'dose-unreachable',
+        text: `in ${missing} of ${o.spread.draws} draws no dose reaches ${at}`,
+      });
+    }
+  }
+  return notes;
 }
 
 function branchAnswer({ scan, context }: Analysis): Branch {

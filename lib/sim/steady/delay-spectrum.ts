@@ -168,7 +168,8 @@ function certify(
   for (const i of order) {
     const re = found.re[i]!;
     const im = found.im[i]!;
-    const needed = roots.length < 2 || re > -1e-3 * norm;
+    // Far to the left a root matters only if it leads; there the order need not resolve it.
+    const needed = re > -0.02 * norm || (roots.length === 0 && re > -2 * norm);
     if (roots.length >= wanted && !needed) break;
     const exact = polishRoot(work, scale, re, im, 1e-3 * norm);
     const moved = exact ? Math.hypot(exact.re - re, exact.im - im) : Number.POSITIVE_INFINITY;

@@ -1,0 +1,123 @@
+import { EngineError, type OnsetSpread, type PredictRequest, type Side } from '@/lib/contracts';
+import { controlToDose } from '../dose-map';
+import { checkDelays } from '../equations/check-delays';
+import type { CompiledSystem } from '../equations/types';
+import { type Analysis, analyse, type Range } from '../onset/analyse';
+import type { Onset } from '../onset/scan';
+import { quantile } from './quantile';
+import { type Draw, sampler } from './sample';
+import { WarmStart } from './warm-start';
+
+export interface PropagateHooks {
+  progress?(done: number, total: number, what: string): void;
+  cancelled?(): boolean;
+}
+
+export const sideOf = (o: Onset): Side => (o.growthSlope > 0 ? 'above' : 'below');
+
+/**
+ * The onset's distribution, given the spreads: one entry for each nominal onset.
+ *
+ * Each draw is solved by Newton from a first-order prediction and certified against the whole spectrum;
+ * where that fails for any onset, or the onset left the range, the draw gets a full scan of its own.
+ * Draws without a steady state, with a negative delay or leaving the physical range count in `none`.
+ */
+export function propagate(
+  system: CompiledSystem,
+  request: PredictRequest,
+  range: Range,
+  nominal: Analysis,
+  hooks: PropagateHooks,
+): OnsetSpread[] {
+  const onsets = nominal.scan.onsets;
+  const found: { values: number[]; doses: (number | null)[] }[] = onsets.map(() => ({
+    values: [],
+    doses: [],
+  }));
+  if (onsets.length > 0) {
+    const sampling = sampler(request.model, request.control, system);
+    const draws = sampling.draws(request.draws, request.seed);
+    const warm = new WarmStart(system, range, nominal, sampling);
+    const exact = sampling.uncertain.length === 0;
+    draws.forEach((draw, i) => {
+      if (i % 50 === 0) {
+        hooks.progress?.(i, request.draws, 'drawing from the spreads');
+        if (hooks.cancelled?.()) throw new EngineError('limit-exceeded', 'cancelled', 'draws');
+      }
+      const values = exact
+        ? onsets.map((o) => o.control)
+        : onsetsOfDraw(system, range, nominal, warm, draw);
+      values.forEach((value, k) => {
+        if (value === null) return;
+        found[k]!.values.push(value);
+        found[k]!.doses.push(draw.doseMap === null ? null : controlToDose(draw.doseMap, value));
+      });
+    });
+  }
+  return onsets.map((o, k) => summarise(found[k]!, o.control, request.draws));
+}
+
+function onsetsOfDraw(
+  system: CompiledSystem,
+  range: Range,
+  nominal: Analysis,
+  warm: WarmStart,
+  draw: Draw,
+): (number | null)[] {
+  const onsets = nominal.scan.onsets;
+  if (!isUsable(system, range, draw.parameters)) return onsets.map(() => null);
+  const quick = warm.solve(draw);
+  if (quick) return quick;
+  try {
+    const own = analyse(system, draw.parameters, range, nominal.equilibrium.x);
+    return matchOnsets(onsets, own.scan.onsets);
+  } catch (error) {
+    if (error instanceof EngineError && error.code === 'no-steady-state') {
+      return onsets.map(() => null);
+    }
+    throw error;
+  }
+}
+
+function isUsable(system: CompiledSystem, range: Range, p: Float64Array): boolean {
+  if (!p.every((v) => Number.isFinite(v))) return false;
+  if (system.K === 0) return true;
+  try {
+    checkDelays(system, p, range.controlIndex, range.from, range.to);
+    return true;
+  } catch (error) {
+    if (error instanceof EngineError) return false;
+    throw error;
+  }
+}
+
+/** The k-th onset of a side goes with the k-th nominal onset of that side. */
+export function matchOnsets(nominal: readonly Onset[], drawn: readonly Onset[]): (number | null)[] {
+  const queue = { above: [] as number[], below: [] as number[] };
+  for (const o of drawn) queue[sideOf(o)].push(o.control);
+  const next = { above: 0, below: 0 };
+  return nominal.map((o) => {
+    const side = sideOf(o);
+    const value = queue[side][next[side]];
+    next[side] += 1;
+    return value ?? null;
+  });
+}
+
+function summarise(
+  found: { values: number[]; doses: (number | null)[] },
+  nominal: number,
+  draws: number,
+): OnsetSpread {
+  const sorted = [...found.values].sort((a, b) => a - b);
+  const at = (p: number) => (sorted.length > 0 ? quantile(sorted, p) : nominal);
+  return {
+    draws,
+    median: at(0.5),
+    low: at(0.05),
+    high: at(0.95),
+    none: (draws - sorted.length) / draws,
+    values: found.values,
+    doses: found.doses,
+  };
+}
