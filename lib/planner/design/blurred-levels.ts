@@ -5,11 +5,12 @@ import type { Atoms, Prior } from './prior';
 import { pooled } from './prior';
 import type { Settable } from './settable';
 
-const SEARCH_ATOMS = 64;
+/** Enough places that the onset stays resolved after all verdicts are in. */
+const searchAtoms = (verdicts: number) => Math.min(200, Math.max(64, 8 * Math.sqrt(verdicts)));
 const LATTICE = 1500;
 /** Work allowed to one search, in evaluations of one design. */
 const EVALUATIONS = 2400;
-const EVALUATIONS_BY_POINTS = 240;
+const EVALUATIONS_BY_POINTS = 60;
 
 /** The doses that the search moves over: the grid, or a lattice of 1/125 of the widened prior. */
 function latticeOf(prior: Prior, set: Settable, blur: number, extra: readonly number[]): number[] {
@@ -52,12 +53,13 @@ function snapped(lattice: number[], doses: readonly number[], apart: number): nu
 }
 
 /** Candidate moves of step h: each level, all together, and all about their middle. */
-function movesOf(at: readonly number[], h: number): number[][] {
+function movesOf(at: readonly number[], h: number, together: boolean): number[][] {
   const moves: number[][] = [];
   for (const sign of [-1, 1]) {
-    for (let i = 0; i < at.length; i += 1)
+    for (let i = 0; i < at.length && !together; i += 1) {
       moves.push(at.map((x, j) => (j === i ? x + sign * h : x)));
-    if (at.length === 1) continue;
+    }
+    if (at.length === 1 && !together) continue;
     moves.push(at.map((x) => x + sign * h));
     const middle = (at.length - 1) / 2;
     moves.push(at.map((x, j) => x + Math.round((sign * h * (j - middle)) / Math.max(1, middle))));
@@ -65,7 +67,13 @@ function movesOf(at: readonly number[], h: number): number[][] {
   return moves;
 }
 
-type Search = { lattice: number[]; apart: number; cost: (levels: number[]) => number };
+type Search = {
+  lattice: number[];
+  apart: number;
+  /** Levels move as one only: where the cost is sampled, single moves would follow its noise. */
+  together: boolean;
+  cost: (levels: number[]) => number;
+};
 type Found = { at: number[]; cost: number };
 
 function permitted(search: Search, at: readonly number[]): boolean {
@@ -84,9 +92,9 @@ function descend(search: Search, start: Found, allowance: number): Found {
   let left = allowance;
   while (left > 0) {
     let improved = false;
-    const count = movesOf(best.at, h).length;
+    const count = movesOf(best.at, h, search.together).length;
     for (let i = 0; i < count && left > 0; i += 1) {
-      const at = movesOf(best.at, h)[i]!;
+      const at = movesOf(best.at, h, search.together)[i]!;
       if (!permitted(search, at)) continue;
       left -= 1;
       const cost = search.cost(at.map((x) => search.lattice[x]!));
@@ -123,7 +131,7 @@ export function blurredLevels(
   equal: readonly number[],
   apart: number,
 ): number[] {
-  const atoms: Atoms = pooled(prior.atoms, SEARCH_ATOMS);
+  const atoms: Atoms = pooled(prior.atoms, searchAtoms(certain.length * reading.replicates));
   const lattice = latticeOf(prior, set, reading.blur, [...certain, ...equal]);
   const starts = startsOf(prior, certain, equal).flatMap((doses) => {
     const at = doses.length === certain.length ? snapped(lattice, doses, apart) : null;
@@ -136,7 +144,7 @@ export function blurredLevels(
   );
   const cost = (levels: number[]) =>
     blurredVariance(atoms, levels, reading, SEARCH_EFFORT, byPoints).variance;
-  const search: Search = { lattice, apart, cost };
+  const search: Search = { lattice, apart, together: byPoints, cost };
   const ranked = starts
     .filter((at) => permitted(search, at))
     .map((at) => ({ at, cost: cost(doses(at)) }))

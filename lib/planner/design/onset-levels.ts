@@ -6,7 +6,7 @@ import type { Atoms, Prior } from './prior';
 import { mirrored, pooled } from './prior';
 import type { Settable } from './settable';
 
-const REPORT_ATOMS = 500;
+const REPORT_ATOMS = 250;
 
 /** One predicted onset, ready to be designed for. Doses; `apart`: the smallest step. */
 export type OnsetTask = {

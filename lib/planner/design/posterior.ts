@@ -15,10 +15,15 @@ function countTable(dose: number, atoms: Atoms, reading: Reading): Float64Array 
     // The spread inside an atom widens the blur: exact for one verdict and a normal slice.
     const z = (dose - atoms.x[j]!) / Math.sqrt(reading.blur ** 2 + atoms.v[j]!);
     const [p, q] = [normalCdf(z), normalCdf(-z)];
-    let choose = 1;
+    let rising = 1;
     for (let s = 0; s <= r; s += 1) {
-      table[s * m + j] = choose * p ** s * q ** (r - s);
-      choose = (choose * (r - s)) / (s + 1);
+      table[s * m + j] = rising;
+      rising *= (p * (r - s)) / (s + 1);
+    }
+    let falling = 1;
+    for (let s = r; s >= 0; s -= 1) {
+      table[s * m + j]! *= falling;
+      falling *= q;
     }
   }
   return table;
@@ -62,15 +67,57 @@ const primes = (count: number): number[] => {
   return found;
 };
 
+/** Richtmyer's sequence: frac(n √p), one prime a dimension. */
+function richtmyer(n: number, roots: readonly number[], i: number): number {
+  return (n * roots[i]!) % 1;
+}
+
+/** Number of "sustained" verdicts at quantile u for the onset at atom `truth`. */
+function countAt(table: Float64Array, m: number, truth: number, r: number, u: number): number {
+  let left = u;
+  let s = 0;
+  while (s < r && left >= table[s * m + truth]!) {
+    left -= table[s * m + truth]!;
+    s += 1;
+  }
+  return s;
+}
+
+/** Multiplies the likelihood of s verdicts into `joint`, kept clear of underflow. */
+function update(joint: Float64Array, table: Float64Array, s: number): void {
+  const m = joint.length;
+  let top = 0;
+  for (let j = 0, at = s * m; j < m; j += 1, at += 1) {
+    joint[j]! *= table[at]!;
+    if (joint[j]! > top) top = joint[j]!;
+  }
+  if (top > 0 && top < 1e-100) for (let j = 0; j < m; j += 1) joint[j]! /= top;
+}
+
+function varianceUnder(joint: Float64Array, atoms: Atoms): number {
+  let [w, moment] = [0, 0];
+  for (let j = 0; j < joint.length; j += 1) {
+    w += joint[j]!;
+    moment += joint[j]! * atoms.x[j]!;
+  }
+  if (w === 0) return 0;
+  const mean = moment / w;
+  let variance = 0;
+  for (let j = 0; j < joint.length; j += 1) {
+    variance += joint[j]! * ((atoms.x[j]! - mean) ** 2 + atoms.v[j]!);
+  }
+  return variance / w;
+}
+
 /**
- * The same by equidistributed points instead of all outcomes: onsets stratified, verdict counts
- * from Richtmyer's sequence (n √p, fractional part). Standard error near 1/√points of itself.
+ * The expected variance by equidistributed points instead of all outcomes: onsets stratified,
+ * verdict counts from Richtmyer's sequence. Standard error near 1/√points of the answer.
  */
-function gainByPoints(atoms: Atoms, tables: Float64Array[], r: number, points: number): number {
+function varianceByPoints(atoms: Atoms, tables: Float64Array[], r: number, points: number): number {
   const m = atoms.x.length;
   const roots = primes(tables.length).map(Math.sqrt);
   const joint = new Float64Array(m);
-  let gain = 0;
+  let sum = 0;
   let truth = 0;
   let below = atoms.w[0]!;
   for (let n = 0; n < points; n += 1) {
@@ -81,27 +128,11 @@ function gainByPoints(atoms: Atoms, tables: Float64Array[], r: number, points: n
     joint.set(atoms.w);
     for (let i = 0; i < tables.length; i += 1) {
       const table = tables[i]!;
-      let u = ((n + 1) * roots[i]!) % 1;
-      let s = 0;
-      while (s < r && u >= table[s * m + truth]!) {
-        u -= table[s * m + truth]!;
-        s += 1;
-      }
-      let top = 0;
-      for (let j = 0, at = s * m; j < m; j += 1, at += 1) {
-        joint[j]! *= table[at]!;
-        if (joint[j]! > top) top = joint[j]!;
-      }
-      if (top > 0 && top < 1e-200) for (let j = 0; j < m; j += 1) joint[j]! /= top;
+      update(joint, table, countAt(table, m, truth, r, richtmyer(n + 1, roots, i)));
     }
-    let [w, moment] = [0, 0];
-    for (let j = 0; j < m; j += 1) {
-      w += joint[j]!;
-      moment += joint[j]! * atoms.x[j]!;
-    }
-    if (w > 0) gain += (moment / w) ** 2 / points;
+    sum += varianceUnder(joint, atoms);
   }
-  return gain;
+  return sum / points;
 }
 
 export type Effort = { prune: number; cap: number; points: number };
@@ -126,12 +157,12 @@ export function blurredVariance(
     .map((d) => countTable(d - mean, centred, reading));
   const r = reading.replicates;
   const tree = byPoints ? null : gainByTree(centred, tables, r, effort.prune, effort.cap);
-  const gain = tree ?? gainByPoints(centred, tables, r, effort.points);
-  return { variance: Math.min(sd * sd, Math.max(0, sd * sd - gain)), byPoints: tree === null };
+  const left = tree === null ? varianceByPoints(centred, tables, r, effort.points) : sd * sd - tree;
+  return { variance: Math.min(sd * sd, Math.max(0, left)), byPoints: tree === null };
 }
 
-export const SEARCH_EFFORT: Effort = { prune: 1e-5, cap: 20_000, points: 1024 };
-export const REPORT_EFFORT: Effort = { prune: 1e-8, cap: 200_000, points: 8192 };
+export const SEARCH_EFFORT: Effort = { prune: 1e-5, cap: 20_000, points: 600 };
+export const REPORT_EFFORT: Effort = { prune: 1e-8, cap: 100_000, points: 2400 };
 
 /** E[Var(onset | verdicts)], as reported; `atoms` a pooled prior where verdicts are blurred. */
 export function expectedVariance(
