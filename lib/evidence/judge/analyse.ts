@@ -1,0 +1,169 @@
+import type { JudgeRequest } from '@/lib/contracts';
+import { lateAmplitude, phasors, type RingTest, ringTest } from './amplitude';
+import { secondOrderRhythm, yuleWalker } from './autoregression';
+import { type DrivenFit, drivenModel, fitDriven, type GrowthInterval, growthInterval } from './driven';
+import { leastSquares } from './least-squares';
+import { bestNull, type Null } from './nulls';
+import { type Bounds, bestOscillation, bic, fitOscillation, type Oscillation, trendColumns } from './oscillation';
+import { baluevFalseAlarm, leadingPeaks, periodogram } from './periodogram';
+import type { Series } from './prepare';
+
+/** Everything that the verdict is drawn from. Times in records, values in sd of the record. */
+export type Analysis = {
+  null: Null;
+  falseAlarm: number;
+  /** Score of the best rhythm over the best account without one, search counted. */
+  evidence: number;
+  rhythm: Rhythm | null;
+  /** Highest frequency that the sampling carries, cycles per record. */
+  maxFrequency: number;
+  outliers: number;
+};
+
+export type Rhythm = {
+  oscillation: Oscillation;
+  driven: DrivenFit;
+  interval: GrowthInterval;
+  ring: RingTest | null;
+  amplitude: { value: number; halfWidth: number };
+  /** Growth rate of the later half alone (per whole record) and its standard error. */
+  late: { growth: number; sd: number } | null;
+  /** sd of the fit's scatter over the rhythm's amplitude. */
+  noiseRatio: number;
+};
+
+export function analyse(full: Series, expected: JudgeRequest['expectedPeriod']): Analysis {
+  const floor = Math.max(0.7 * (full.noise ?? 0), 0.01);
+  const bounds = frequencyBounds(full, expected);
+  const first = search(full, bounds, floor);
+  const cleaned = first.oscillation ? withoutLoneOutliers(full, first.oscillation.residuals) : full;
+  const outliers = full.t.length - cleaned.t.length;
+  const { none, oscillation, falseAlarm } = outliers > 0 ? search(cleaned, bounds, floor) : first;
+  const bare = { null: none, falseAlarm, maxFrequency: bounds.maxFrequency, outliers };
+  if (oscillation === null) return { ...bare, evidence: -Infinity, rhythm: null };
+  const n = cleaned.t.length;
+  const trend = trendColumns(cleaned.t, oscillation.trendDegree);
+  const plain = cleaned.y.map((v, i) => v - oscillation.overtones[i]!);
+  const model = drivenModel(cleaned.t, plain, trend, floor, bounds);
+  const driven = fitDriven(model, drivenStarts(cleaned, oscillation));
+  if (driven === null) return { ...bare, evidence: -Infinity, rhythm: null };
+  const search_ = Math.log(Math.max(2, bounds.maxFrequency - bounds.minFrequency));
+  const free = 4 + oscillation.trendDegree + 2 * (oscillation.harmonics - 1);
+  const isDriven = driven.logLikelihood - driven.undrivenLogLikelihood > 0.5;
+  const cost = ((free + (isDriven ? 1 : 0)) / 2) * Math.log(n) + search_;
+  const evidence = driven.logLikelihood - cost - none.score;
+  const rhythm = weigh(cleaned, oscillation, driven, growthInterval(model, driven), bounds);
+  return { ...bare, evidence, rhythm };
+}
+
+function weigh(
+  series: Series,
+  oscillation: Oscillation,
+  driven: DrivenFit,
+  interval: GrowthInterval,
+  bounds: Bounds,
+): Rhythm {
+  const { frequency, harmonics, trendDegree } = oscillation;
+  const trend = trendColumns(series.t, trendDegree);
+  const level = leastSquares(trend, series.y);
+  const sequence = phasors(series.t, level.residuals, frequency, harmonics, frequency >= 40 ? 2 : 1);
+  const amplitude = lateAmplitude(series.t, level.residuals, frequency, harmonics);
+  const sd = Math.sqrt(oscillation.rss / Math.max(1, series.t.length - 4 - 2 * harmonics));
+  return {
+    oscillation,
+    driven,
+    interval,
+    ring: ringTest(sequence),
+    amplitude,
+    late: lateGrowth(series, oscillation, bounds),
+    noiseRatio: sd / Math.max(amplitude.value, 1e-12),
+  };
+}
+
+/** Growth over the later half; the standard error is √(24/n)·(s/A) per half record. */
+function lateGrowth(series: Series, whole: Oscillation, bounds: Bounds) {
+  const index = Array.from(series.t.keys()).filter((i) => series.t[i]! >= 0.5);
+  const n = index.length;
+  if (n < 6 + 2 * whole.harmonics) return null;
+  const half = {
+    t: Float64Array.from(index, (i) => 2 * series.t[i]! - 1),
+    y: Float64Array.from(index, (i) => series.y[i]!),
+  };
+  const halfBounds = { minFrequency: 0.5, maxFrequency: bounds.maxFrequency };
+  const start = { growth: 0, frequency: whole.frequency / 2 };
+  const fit = fitOscillation(half, start, whole.harmonics, 1, halfBounds);
+  if (fit === null) return null;
+  const { value } = lateAmplitude(half.t, half.y, fit.frequency, whole.harmonics);
+  const s = Math.sqrt(fit.rss / Math.max(1, n - 4 - 2 * whole.harmonics));
+  return { growth: 2 * fit.growth, sd: 2 * Math.sqrt(24 / n) * (s / Math.max(value, 1e-12)) };
+}
+
+function frequencyBounds(series: Series, expected: JudgeRequest['expectedPeriod']): Bounds {
+  const gaps = Array.from(series.t.slice(1), (v, i) => v - series.t[i]!).sort((a, b) => a - b);
+  const middle = gaps[Math.floor(gaps.length / 2)]!;
+  const even = gaps.every((g) => Math.abs(g / middle - Math.round(g / middle)) < 1e-3);
+  const nyquist = 0.5 / middle;
+  const n = series.t.length;
+  let maxFrequency = even ? nyquist : Math.min(2 * n, Math.max(nyquist, n / 2));
+  if (!even && expected) {
+    maxFrequency = Math.min(4 * n, Math.max(maxFrequency, (1.2 * series.span) / expected.low));
+  }
+  return { minFrequency: 2, maxFrequency: Math.max(2.5, maxFrequency) };
+}
+
+function search(series: Series, bounds: Bounds, floor: number) {
+  const none = bestNull(series, floor);
+  const degree = Math.max(1, none.kind === 'bend' ? none.trendDegree : 1);
+  const level = leastSquares(trendColumns(series.t, degree), series.y);
+  const { minFrequency, maxFrequency } = bounds;
+  const points = Math.min(6000, Math.ceil(5 * (maxFrequency - minFrequency)) + 10);
+  const spectrum = periodogram(series.t, level.residuals, minFrequency, maxFrequency, points);
+  const peaks = leadingPeaks(spectrum, 4);
+  const highest = Math.max(...spectrum.map((p) => p.power));
+  const falseAlarm = baluevFalseAlarm(highest, series.t, maxFrequency);
+  const starts = peaks.map((p) => p.frequency);
+  if (starts.length === 0) starts.push(minFrequency * 1.05);
+  let oscillation = bestOscillation(series, starts, degree, bounds, floor);
+  for (const other of [1, 2, 3]) {
+    if (oscillation === null || other === oscillation.trendDegree) continue;
+    const again = fitOscillation(series, oscillation, oscillation.harmonics, other, bounds);
+    const n = series.t.length;
+    const score = (o: Oscillation) => bic(o.rss, n, o.trendDegree, floor);
+    if (again && score(again) < score(oscillation)) oscillation = again;
+  }
+  return { none, oscillation, falseAlarm };
+}
+
+function drivenStarts(series: Series, o: Oscillation) {
+  const starts = [
+    { growth: o.growth, frequency: o.frequency },
+    { growth: -0.35 * o.frequency, frequency: o.frequency },
+    { growth: -1.5 * o.frequency, frequency: o.frequency },
+  ];
+  const n = series.t.length;
+  const gap = 1 / (n - 1);
+  const even = series.t.every((v, i) => Math.abs(v - i * gap) < 1e-3 * gap);
+  const ar = even ? yuleWalker(series.y, 2) : null;
+  const pole = ar && secondOrderRhythm(ar.coefficients[0]!, ar.coefficients[1]!);
+  const frequency = pole ? (n - 1) / pole.polePeriod : 0;
+  if (pole && frequency > 2) starts.push({ growth: -(n - 1) / pole.decayTime, frequency });
+  return starts;
+}
+
+/**
+ * Leaves out readings whose residual is over six robust sd while their neighbours fit, at most one
+ * in twenty: single slips, not the spikes of a rhythm.
+ */
+function withoutLoneOutliers(series: Series, residuals: Float64Array): Series {
+  const sizes = Array.from(residuals, Math.abs).sort((a, b) => a - b);
+  const limit = 6 * 1.4826 * sizes[Math.floor(sizes.length / 2)]!;
+  const far = Array.from(residuals, (r) => Math.abs(r) > limit);
+  const lone = far.map((f, i) => f && !far[i - 1] && !far[i + 1]);
+  const count = lone.filter(Boolean).length;
+  if (count === 0 || count !== far.filter(Boolean).length || count > series.t.length / 20) {
+    return series;
+  }
+  const keep = (_: number, i: number) => !lone[i];
+  return { ...series, t: series.t.filter(keep), y: series.y.filter(keep) };
+}
+

@@ -1,0 +1,173 @@
+import type { Verdict } from '@/lib/contracts';
+import type { Analysis, Rhythm } from './analyse';
+import { figure, plural } from './words';
+
+/** A verdict, the growth rate's 90 % interval per record, and why. */
+export type Decision = {
+  verdict: Verdict;
+  growth: { value: number; low: number; high: number } | null;
+  reasons: string[];
+};
+
+/** Thresholds of the verdict; measured rates are in tests/evidence/verdict-rates.test.ts. */
+export const THRESHOLDS = {
+  /** Score over the best account without a rhythm. */
+  evidence: 2,
+  /** Twice the likelihood gain at which a drive by noise counts as shown. */
+  driven: 4.5,
+  /** A sustained rhythm may lose at most this many e-foldings over the record. */
+  loss: 0.5,
+  sustainedCycles: 5,
+  ringCycles: 8,
+  ringChance: 0.005,
+  ringVariation: 0.35,
+} as const;
+
+export function isDriven(r: Rhythm): boolean {
+  return 2 * (r.driven.logLikelihood - r.driven.undrivenLogLikelihood) > THRESHOLDS.driven;
+}
+
+/** Verdict on a record that holds a rhythm. */
+export function decideRhythm(a: Analysis, r: Rhythm, samplesPerCycle: number): Decision {
+  const growth = { value: r.driven.growth, low: r.interval.low, high: r.interval.high };
+  const cycles = r.oscillation.frequency;
+  if (isDriven(r)) return decideDriven(r, growth, cycles);
+  if (growth.low > 0) return decideGrowing(growth, cycles);
+  if (growth.high < 0) return decideDecaying(r, growth, cycles);
+  const limit = -THRESHOLDS.loss;
+  if (cycles >= THRESHOLDS.sustainedCycles && growth.low > limit) {
+    return {
+      verdict: 'sustained',
+      growth,
+      reasons: [
+        `The rhythm keeps its size over ${figure(cycles)} cycles: at most ${percent(growth.low)} of it can have been lost by the end of the record.`,
+        'What is left after a regular rhythm is taken out looks like measurement noise, so it is not a rhythm kept up by noise.',
+      ],
+    };
+  }
+  const wanted = wantedCycles(r, cycles, samplesPerCycle);
+  return {
+    verdict: 'undecided',
+    growth,
+    reasons: [
+      `There is a rhythm, but ${figure(cycles)} cycles do not show whether it lasts: over the record its size may have changed by a factor between ${factor(growth.low)} and ${factor(growth.high)}.`,
+      `To settle it, record about ${wanted} cycles at this density.`,
+    ],
+  };
+}
+
+function decideDriven(r: Rhythm, growth: NonNullable<Decision['growth']>, cycles: number): Decision {
+  const ring = r.ring;
+  if (
+    ring &&
+    cycles >= THRESHOLDS.ringCycles &&
+    ring.chance < THRESHOLDS.ringChance &&
+    ring.variation < THRESHOLDS.ringVariation
+  ) {
+    const half = 1.645 * ring.slopeSd;
+    const own = { value: ring.slope, low: ring.slope - half, high: ring.slope + half };
+    if (own.low > -THRESHOLDS.loss && own.high > -0.1) {
+      return {
+        verdict: 'sustained',
+        growth: own,
+        reasons: [
+          `The rhythm's phase wanders, but its size stays within ${percentOf(ring.variation)} over ${figure(cycles)} cycles: something pulls it back to one size, as a limit cycle does and noise does not.`,
+        ],
+      };
+    }
+  }
+  if (growth.high < 0) {
+    const memory = -cycles / growth.value;
+    return {
+      verdict: 'damped',
+      growth,
+      reasons: [
+        `The rhythm is kept up by noise: it forgets its phase and size within about ${plural(memory, 'cycle')}, and would die away undisturbed.`,
+      ],
+    };
+  }
+  return {
+    verdict: 'undecided',
+    growth,
+    reasons: [
+      'The rhythm wanders in size and phase; this record fits a damped rhythm kept up by noise as well as a sustained one.',
+      `To settle it, record about ${Math.ceil(Math.max(3 * cycles, 20))} cycles, or nudge the system and see whether the rhythm returns to the same size.`,
+    ],
+  };
+}
+
+function decideGrowing(growth: NonNullable<Decision['growth']>, cycles: number): Decision {
+  if (cycles >= 4) {
+    const reason = `The rhythm grows: by a factor of ${factor(growth.value)} over ${figure(cycles)} cycles.`;
+    return { verdict: 'sustained', growth, reasons: [reason] };
+  }
+  return {
+    verdict: 'undecided',
+    growth,
+    reasons: [
+      `The rhythm seems to grow, but only ${figure(cycles)} cycles were recorded.`,
+      `To settle it, record at least ${THRESHOLDS.sustainedCycles} cycles.`,
+    ],
+  };
+}
+
+function decideDecaying(
+  r: Rhythm,
+  growth: NonNullable<Decision['growth']>,
+  cycles: number,
+): Decision {
+  const late = r.late;
+  const levelled =
+    late !== null &&
+    late.growth + 1.645 * late.sd > 0 &&
+    late.growth - 1.645 * late.sd > -2 * THRESHOLDS.loss &&
+    late.growth > 0.5 * growth.value;
+  if (levelled && cycles >= 2 * THRESHOLDS.sustainedCycles) {
+    const half = 1.645 * late.sd;
+    return {
+      verdict: 'sustained',
+      growth: { value: late.growth, low: late.growth - half, high: late.growth + half },
+      reasons: [
+        `The rhythm shrank at first and then kept its size: over the later ${figure(cycles / 2)} cycles no decay is seen.`,
+      ],
+    };
+  }
+  if (levelled && growth.value > -0.7) {
+    return {
+      verdict: 'undecided',
+      growth,
+      reasons: [
+        'The rhythm shrinks a little early in the record and not visibly later.',
+        `To settle it, record about ${Math.ceil(Math.max(2 * cycles, 10))} cycles from the same setting.`,
+      ],
+    };
+  }
+  const life = -cycles / growth.value;
+  return {
+    verdict: 'damped',
+    growth,
+    reasons: [
+      `The rhythm dies away: it falls to about a third (1/e) within ${plural(life, 'cycle')}; the whole 90 % interval of its growth rate lies below zero.`,
+    ],
+  };
+}
+
+/** Cycles at which √(24/N)·(s/A) would keep the loss within its bound, at least the least number. */
+function wantedCycles(r: Rhythm, cycles: number, samplesPerCycle: number): number {
+  const ratio = (1.645 * r.noiseRatio) / (0.8 * THRESHOLDS.loss);
+  const forNoise = (24 * ratio * ratio) / Math.max(samplesPerCycle, 2);
+  return Math.ceil(Math.min(Math.max(forNoise, 1.5 * cycles, 8), 10 * cycles + 20));
+}
+
+function percent(growth: number): string {
+  return percentOf(1 - Math.exp(Math.min(0, growth)));
+}
+
+function percentOf(share: number): string {
+  return `${Math.max(1, Math.round(100 * share))} %`;
+}
+
+function factor(growth: number): string {
+  const value = Math.exp(Math.max(-20, Math.min(20, growth)));
+  return value < 0.001 ? 'almost nothing' : figure(value);
+}
