@@ -87,7 +87,8 @@ function readingsStation({ runs, runsRead, undecided }: StudyCounts): Body {
   if (runsRead === 0) return { state: 'later', fact: 'none yet', missing: 'readings' };
   const recorded = (runs.recorded ?? 0) >= all && runsRead >= all;
   const fact = undecided > 0 ? `${undecided} undecided` : `${plural(runsRead, 'run')} of ${all}`;
-  return { state: recorded && undecided === 0 ? 'done' : 'part', fact, missing: null };
+  const missing = undecided > 0 ? `a verdict on ${plural(undecided, 'run')}` : null;
+  return { state: recorded && undecided === 0 ? 'done' : 'part', fact, missing };
 }
 
 function onsetStation({ observedOnsets, prediction }: StudyCounts): Body {
