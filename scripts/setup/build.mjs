@@ -16,19 +16,21 @@ const leftAside = /^(next-env\.d\.ts|biome\.json|vitest\.config\.ts|playwright\.
  *
  * @param {string} root the repository
  * @param {{ development: boolean }} options in development the web server compiles as it goes
+ * @returns {Promise<string>} the key of the sources
  */
 export async function ensureBuilt(root, { development }) {
   mkdirSync(join(root, 'dist'), { recursive: true });
   const waiting = () => say('another start is building; waiting for it');
-  await inTurn(join(root, 'dist', 'build.lock'), waiting, async () => {
+  return inTurn(join(root, 'dist', 'build.lock'), waiting, async () => {
     const key = sourceKey(root);
     await once(join(root, 'dist', 'source-key'), key, () =>
       step('Bundling the worker and the scripts', () => bundleScripts(root)),
     );
-    if (development) return;
+    if (development) return key;
     await once(join(root, '.next', 'source-key'), key, () =>
       step('Building the pages: a minute or two, once a version', () => buildPages(root)),
     );
+    return key;
   });
 }
 

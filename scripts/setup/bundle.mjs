@@ -14,7 +14,7 @@ const bundledPackages = /^(rrule|odex|tslib)$/;
  * @param {string} root the repository
  */
 export async function bundleScripts(root) {
-  const { build } = await import('esbuild');
+  const { build, stop } = await import('esbuild');
   const folder = join(root, 'scripts');
   const entryPoints = readdirSync(folder)
     .filter((name) => name.endsWith('.ts') && !name.endsWith('.d.ts'))
@@ -30,12 +30,13 @@ export async function bundleScripts(root) {
       format: 'esm',
       target: 'node20',
       mainFields: ['module', 'main'],
-      sourcemap: true,
       logLevel: 'error',
       plugins: [packagesOutside],
     });
   } catch (error) {
     throw new Problem(`The scripts could not be bundled.\n${error.message}`);
+  } finally {
+    await stop();
   }
 }
 

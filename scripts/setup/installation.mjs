@@ -1,3 +1,4 @@
+import { existsSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { ensureBuilt } from './build.mjs';
 import { childEnvironment, databaseName, databaseUser } from './configuration.mjs';
@@ -8,7 +9,7 @@ import { giveLockBack, takeLock, updateLock } from './lock-file.mjs';
 import { endOrphanMariadb, startMariadb, stopMariadb } from './mariadb.mjs';
 import { freePort, isPortFree } from './ports.mjs';
 import { Problem } from './problem.mjs';
-import { endCommands, endProcess, isSameProcess, runForOutput } from './processes.mjs';
+import { endCommands, endProcess, isEnding, isSameProcess, runForOutput } from './processes.mjs';
 import { say, step } from './progress.mjs';
 import { readyText } from './ready-text.mjs';
 import { lastLines, Supervisor } from './supervisor.mjs';
@@ -41,13 +42,15 @@ export class Installation {
 
   /** Brings everything up and says so. @throws Problem */
   async start() {
-    const { dataFolder, port, development } = this.#configuration;
+    const { dataFolder, development } = this.#configuration;
     prepareDataFolder(dataFolder);
     await this.#takeFolder();
     await this.#checkPort();
     await ensureMariadb();
     await ensureDependencies(this.#root);
-    await ensureBuilt(this.#root, { development });
+    const key = await ensureBuilt(this.#root, { development });
+    // From here on all that is written is data: readable by its owner alone.
+    process.umask(0o077);
     const secrets = readSecrets(dataFolder);
     const ports = await this.#choosePorts();
     await step('Starting the database', () => this.#startDatabase(secrets, ports));
@@ -57,12 +60,7 @@ export class Installation {
       secrets,
       catcher: this.#catcher,
     });
-    const prepared = await this.#prepareDatabase(environment);
-    await this.#checkPort();
-    await step('Starting the web server and the worker', async () => {
-      this.#startServers(environment);
-      await healthy(port, development ? 180 : 60, this.#logFile('web server'));
-    });
+    const prepared = await this.#serve(environment, key);
     console.log(readyText(this.#configuration, this.#catcher, prepared));
   }
 
@@ -75,7 +73,7 @@ export class Installation {
     if (this.#mariadb !== null) await stopMariadb(this.#mariadb);
     await endOrphanMariadb(this.#databaseFolder());
     giveLockBack(this.#lock);
-    say('everything has ended; all data are kept');
+    if (this.#mariadb !== null) say('everything has ended; all data are kept');
   }
 
   async #takeFolder() {
@@ -125,20 +123,43 @@ export class Installation {
     });
     const { child, places } = this.#mariadb;
     const died = () => {
+      if (isEnding()) return;
       this.onFailure(new Problem(`The database ended.\n${lastLines(places.log)}\n(${places.log})`));
     };
     if (child.exitCode !== null || child.signalCode !== null) died();
     else child.once('exit', died);
   }
 
+  /** Prepares the database and starts the servers: side by side when these very sources did so before. */
+  async #serve(environment, key) {
+    const mark = join(this.#databaseFolder(), 'prepared-for');
+    const known = existsSync(mark) && readFileSync(mark, 'utf8') === key;
+    if (!known) {
+      const text = 'Bringing the database up to date, with a demo lab in a new one';
+      const prepared = await step(text, () => this.#prepareDatabase(environment));
+      writeFileSync(mark, key);
+      await this.#startServers(environment);
+      return prepared;
+    }
+    const servers = this.#startServers(environment);
+    const [prepared] = await Promise.all([this.#prepareDatabase(environment), servers]);
+    return prepared;
+  }
+
   async #prepareDatabase(environment) {
-    return step('Bringing the database up to date, with a demo lab in a new one', async () => {
-      const script = join(this.#root, 'dist', 'prepare-database.mjs');
-      const args = ['--enable-source-maps', script];
-      const options = { cwd: this.#root, env: environment };
-      const { status, output } = await runForOutput(process.execPath, args, options);
-      if (status !== 0) throw new Problem('The database could not be prepared; see above.');
-      return JSON.parse(output.trim().split('\n').at(-1));
+    const script = join(this.#root, 'dist', 'prepare-database.mjs');
+    const options = { cwd: this.#root, env: environment };
+    const { status, output } = await runForOutput(process.execPath, [script], options);
+    if (status !== 0) throw new Problem('The database could not be prepared; see above.');
+    return JSON.parse(output.trim().split('\n').at(-1));
+  }
+
+  async #startServers(environment) {
+    const { port, development } = this.#configuration;
+    await this.#checkPort();
+    await step('Starting the web server and the worker', async () => {
+      this.#startWebAndWorker(environment);
+      await healthy(port, development ? 180 : 60, this.#logFile('web server'));
     });
   }
 
@@ -153,7 +174,7 @@ export class Installation {
     });
   }
 
-  #startServers(environment) {
+  #startWebAndWorker(environment) {
     const { port, development } = this.#configuration;
     this.#startChild('worker', {
       script: join(this.#root, 'dist', 'worker.mjs'),
