@@ -2,8 +2,10 @@ CREATE TABLE `onset_estimate` (
 	`id` char(36) NOT NULL,
 	`lab_id` char(36) NOT NULL,
 	`study_id` char(36) NOT NULL,
-	`request` json NOT NULL,
-	`answer` json NOT NULL,
+	`prediction_id` char(36),
+	`requests` json NOT NULL,
+	`answers` json NOT NULL,
+	`runs_judged` int NOT NULL,
 	`engine_version` varchar(20) NOT NULL,
 	`created_at` datetime(3) NOT NULL DEFAULT CURRENT_TIMESTAMP(3),
 	CONSTRAINT `onset_estimate_id` PRIMARY KEY(`id`)
@@ -296,6 +298,8 @@ CREATE TABLE `series_version` (
 	`decided_at` datetime(3),
 	`decision` text,
 	`inherited_from` char(36),
+	`unplaced` json,
+	`laid_out_at` datetime(3),
 	`revision` int NOT NULL DEFAULT 1,
 	CONSTRAINT `series_version_id` PRIMARY KEY(`id`),
 	CONSTRAINT `series_version_study_number` UNIQUE(`study_id`,`number`)
@@ -439,6 +443,7 @@ CREATE TABLE `worker_beat` (
 --> statement-breakpoint
 ALTER TABLE `onset_estimate` ADD CONSTRAINT `onset_estimate_lab_id_lab_id_fk` FOREIGN KEY (`lab_id`) REFERENCES `lab`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `onset_estimate` ADD CONSTRAINT `onset_estimate_study_id_study_id_fk` FOREIGN KEY (`study_id`) REFERENCES `study`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE `onset_estimate` ADD CONSTRAINT `onset_estimate_prediction_id_prediction_id_fk` FOREIGN KEY (`prediction_id`) REFERENCES `prediction`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `reading` ADD CONSTRAINT `reading_lab_id_lab_id_fk` FOREIGN KEY (`lab_id`) REFERENCES `lab`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `reading` ADD CONSTRAINT `reading_run_id_run_id_fk` FOREIGN KEY (`run_id`) REFERENCES `run`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `reading` ADD CONSTRAINT `reading_upload_id_upload_id_fk` FOREIGN KEY (`upload_id`) REFERENCES `upload`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint

@@ -13,7 +13,7 @@ import type { EstimateAnswer, EstimateRequest, JudgeAnswer, Verdict } from '@/li
 import { createdAt, id, primaryId, shape } from './columns';
 import { lab, user } from './lab';
 import { run, session } from './run';
-import { study } from './study';
+import { prediction, study } from './study';
 
 export type RowProblem = {
   row: number;
@@ -116,8 +116,12 @@ export const onsetEstimate = mysqlTable(
     studyId: id('study_id')
       .notNull()
       .references(() => study.id),
-    request: shape<EstimateRequest>('request').notNull(),
-    answer: shape<EstimateAnswer>('answer').notNull(),
+    predictionId: id('prediction_id').references(() => prediction.id),
+    /** One pair an onset that was predicted, in its order; one alone where none was. */
+    requests: shape<EstimateRequest[]>('requests').notNull(),
+    answers: shape<EstimateAnswer[]>('answers').notNull(),
+    /** Runs that had a verdict when this was worked out. */
+    runsJudged: int('runs_judged').notNull(),
     engineVersion: varchar('engine_version', { length: 20 }).notNull(),
     createdAt: createdAt(),
   },

@@ -20,7 +20,8 @@ async function chainGaps(conn: Conn, labId: string, held: Held): Promise<MoveLab
     .from(run)
     .where(and(eq(run.labId, labId), inArray(run.id, runIds)));
   const bookingOf = new Map(held.map((b) => [b.runId, b.id]));
-  const chains = Map.groupBy(rows, (r) => r.preparationId);
+  const chains = new Map<string, typeof rows>();
+  for (const r of rows) chains.set(r.preparationId, [...(chains.get(r.preparationId) ?? []), r]);
   return [...chains.values()].flatMap((chain) => {
     const sorted = chain.sort(
       (a, b) => (a.plannedStart?.getTime() ?? 0) - (b.plannedStart?.getTime() ?? 0),
