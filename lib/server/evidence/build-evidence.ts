@@ -8,6 +8,7 @@ import {
 } from '@/db/queries/readings';
 import type { JudgeAnswer, JudgeRequest, PredictAnswer } from '@/lib/contracts';
 import { minutesPerUnit } from '@/lib/planner/cadence/time-unit';
+import { doseToControl } from '@/lib/sim/dose-map';
 import type { EvidencePlan, EvidenceRun } from './plan';
 
 type Of = { labId: string; studyId: string };
@@ -69,16 +70,16 @@ async function evidenceRun(
     verdicts.filter((v) => v.runId === run.id),
   );
   if (!record && !verdict) return null;
-  const dose = run.deliveredDose;
-  // The delivered dose scales the control value as the planned dose does, to first order.
-  const control = dose !== null && run.dose !== 0 ? (run.control * dose) / run.dose : run.control;
+  // What was delivered counts, not what was planned.
+  const map = prediction.request.control.doseMap;
+  const control = doseToControl(map, run.deliveredDose ?? run.dose) ?? run.control;
   return {
     runId: run.id,
     readout: record?.readout ?? null,
     judge: record?.judge ?? null,
     fixed: standing !== null && standing.kind !== 'computed',
     level: {
-      control: prediction.request.control.doseMap ? run.control : control,
+      control,
       preparation: run.preparation,
       ...(run.direction ? { direction: run.direction } : {}),
       ...(verdict ? { verdict } : {}),
