@@ -29,7 +29,7 @@ export function VerdictMark({ state, size = 12, alone = false }: MarkProps) {
 /** The mark with its word beside it. */
 export function VerdictLabel({ state, size = 12 }: { state: MarkState; size?: number }) {
   return (
-    <span className="inline-flex items-center gap-2 whitespace-nowrap">
+    <span className="inline-flex items-center align-middle gap-2 whitespace-nowrap">
       <VerdictMark state={state} size={size} />
       {state}
     </span>

@@ -14,7 +14,7 @@ export type PartProps = {
 };
 
 const STALE = 0.4;
-const crisp = (at: number) => Math.floor(at) + 0.5;
+const crisp = (at: number) => Math.round(at) + 0.5;
 
 export function Hatch({ id }: { id: string }) {
   return (

@@ -5,7 +5,7 @@ import type { Dimensions } from './dimensions';
 import type { Text } from './labels';
 import type { Tick } from './scale';
 
-const crisp = (at: number) => Math.floor(at) + 0.5;
+const crisp = (at: number) => Math.round(at) + 0.5;
 const inRange = (at: number, width: number) => at >= 0 && at <= width;
 
 export function ScaleRule({ size, dim, width, ticks }: PartProps & { ticks: Tick[] }) {
@@ -56,7 +56,7 @@ export function Predicted({ data, size, dim, x, width, ground }: PartProps & { g
   const top = size === 'page' ? 13 : 0.5;
   const [half, high] = size === 'page' ? [5.4, 9] : [3.6, 6];
   return data.onsets.map((onset) => {
-    const at = size === 'page' ? crisp(x(onset.value)) : crisp(x(onset.value));
+    const at = crisp(x(onset.value));
     if (!inRange(at, width)) return null;
     if (size === 'list') {
       return (

@@ -21,6 +21,12 @@ export function niceStep(least: number): number {
   return 10 * power;
 }
 
+/** A numeral of a scale, without trailing zeros: "0.8", "1", "1.2". */
+function tickText(value: number, decimals: number): string {
+  const text = fixed(value, decimals);
+  return text.includes('.') ? text.replace(/\.?0+$/, '') : text;
+}
+
 const MINORS: Record<number, number> = { 1: 5, 2: 4, 5: 5 };
 
 /** Most ticks that one scale may carry; a wider one would be a smear. */
@@ -55,7 +61,7 @@ export function ticksOf(
       value,
       x: x(value),
       major: i % parts === 0,
-      text: value === 0 ? '0' : fixed(value, decimals),
+      text: tickText(value, decimals),
     });
   }
   return ticks;

@@ -1,6 +1,7 @@
 import clsx from 'clsx';
 import type { ReactNode } from 'react';
 import { type IntervalLike, type IntervalStyle, intervalParts } from '@/lib/format';
+import { ScrollRegion } from './scroll-region';
 
 export type Column<Row> = {
   key: string;
@@ -29,12 +30,7 @@ type TableProps<Row> = {
 export function DataTable<Row>(props: TableProps<Row>) {
   const { caption, columns, rows, rowKey, selectedKey, empty } = props;
   return (
-    // A wide table scrolls inside its plate; the keyboard must be able to reach it.
-    <section
-      aria-label={caption}
-      tabIndex={0}
-      className="overflow-x-auto rounded-key border border-rule bg-plate"
-    >
+    <ScrollRegion label={caption} className="rounded-key border border-rule bg-plate">
       <table className="w-full border-collapse text-body">
         <caption className="sr-only">{caption}</caption>
         <thead>
@@ -69,7 +65,7 @@ export function DataTable<Row>(props: TableProps<Row>) {
           ) : null}
         </tbody>
       </table>
-    </section>
+    </ScrollRegion>
   );
 }
 
@@ -81,8 +77,8 @@ function Head<Row>({ column }: { column: Column<Row> }) {
       scope="col"
       className={clsx(
         EDGE,
-        'pt-2 pb-1.5 align-bottom text-caption font-medium text-ink2',
-        column.kind === 'figure' ? 'text-right' : 'text-left',
+        'pt-2 pb-2 align-bottom text-caption font-medium text-ink2',
+        column.kind === 'figure' && !column.strong ? 'text-right' : 'text-left',
       )}
     >
       {column.head}
@@ -94,10 +90,10 @@ function Head<Row>({ column }: { column: Column<Row> }) {
 function Cell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
   const className = clsx(
     EDGE,
-    'h-[37px] text-left font-normal',
+    'h-[38px] text-left font-normal',
     column.kind === 'figure' && 'whitespace-nowrap font-mono',
     column.kind === 'figure' && !column.strong && 'text-right',
-    column.strong && 'font-bold',
+    column.strong && 'font-semibold',
   );
   return column.strong ? (
     <th scope="row" className={className}>
@@ -121,7 +117,8 @@ export function IntervalFigure({
   return (
     <>
       {value}
-      <span className="text-caption text-ink2">{` ${range}`}</span>
+      <span className="font-sans"> </span>
+      <span className="ml-0.5 text-caption text-ink2">{range}</span>
     </>
   );
 }

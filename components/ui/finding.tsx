@@ -14,10 +14,10 @@ type FindingProps = {
 export function Finding({ title, children, next, actions }: FindingProps) {
   return (
     <section className="max-w-[640px] min-w-0 desk:w-96 desk:shrink-0">
-      <h2 className="pt-0.5 text-finding font-bold">{title}</h2>
-      {children ? <div className="mt-2 text-body">{children}</div> : null}
+      <h2 className="pt-0.5 text-finding font-semibold">{title}</h2>
+      {children ? <div className="mt-[11px] text-body">{children}</div> : null}
       {next ? <div className="mt-3 text-body text-ink2">{next}</div> : null}
-      {actions ? <div className="mt-5 flex flex-wrap gap-3">{actions}</div> : null}
+      {actions ? <div className="mt-[18px] flex flex-wrap gap-3">{actions}</div> : null}
     </section>
   );
 }

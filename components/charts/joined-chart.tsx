@@ -1,0 +1,122 @@
+'use client';
+
+import { Line } from 'recharts';
+import { ticksOf } from '@/components/ribbon/scale';
+import { figure, unitText } from '@/lib/format';
+import { axisFromZero } from './axis';
+import { ChartFrame, FOOT, PAD, type Places } from './chart-frame';
+import {
+  Brackets,
+  Name,
+  type Observation,
+  ObservationMarks,
+  OnsetLines,
+  predictionPieces,
+} from './layers';
+
+export type JoinedChartProps = {
+  /** range of the control axis, the ribbon's own */
+  from: number;
+  to: number;
+  unit: string;
+  /** name of the control parameter */
+  label: string;
+  /** UCUM code of the amplitude */
+  amplitudeUnit: string;
+  /** predicted amplitude along the control axis; null where there is none */
+  predicted?: { control: number[]; amplitude: (number | null)[]; stable?: boolean[] };
+  /** measure = amplitude of the record */
+  observations: Observation[];
+  /** predicted onsets, whose hairlines run through */
+  onsets: number[];
+  /** observed brackets */
+  observed: { low: number; high: number }[];
+  height?: number;
+  /** px before the container has been measured */
+  width?: number;
+};
+
+/** Amplitude against the control parameter, joined beneath the page ribbon on the same scale. */
+export function JoinedChart(props: JoinedChartProps) {
+  const { from, to, height = 232, observations, predicted } = props;
+  const y = axisFromZero(largest(props));
+  const base = height - FOOT;
+  const pieces = predicted
+    ? predictionPieces(predicted.control, predicted.amplitude, predicted.stable)
+    : [];
+  return (
+    <ChartFrame
+      alt={sentence(props)}
+      xDomain={[from, to]}
+      xTicks={(width) => chartTicks(from, to, width)}
+      xName={`${props.label}, ${unitText(props.unit)}`}
+      y={y}
+      yUnit={unitText(props.amplitudeUnit)}
+      height={height}
+      initialWidth={props.width}
+    >
+      {(places, width) => (
+        <>
+          <Brackets brackets={props.observed} places={places} base={base} />
+          {pieces.map((piece) => (
+            <Line
+              key={`${piece.points[0]!.x} ${piece.stable}`}
+              data={piece.points}
+              dataKey="y"
+              type="linear"
+              stroke="var(--ink2)"
+              strokeWidth={1.5}
+              strokeDasharray={piece.stable ? undefined : '1.5 3'}
+              dot={false}
+              activeDot={false}
+              isAnimationActive={false}
+            />
+          ))}
+          <OnsetLines values={props.onsets} places={places} base={base} />
+          {pieces.length > 0 ? <CurveName {...props} places={places} base={base} /> : null}
+          <ObservationMarks observations={observations} places={places} base={base} width={width} />
+        </>
+      )}
+    </ChartFrame>
+  );
+}
+
+/** Half the ribbon's major step between ticks, numerals at the ribbon's own. */
+function chartTicks(from: number, to: number, width: number) {
+  const all = ticksOf(from, to, width, PAD);
+  const majors = all.map((t, i) => (t.major ? i : -1)).filter((i) => i >= 0);
+  const gap = majors.length > 1 ? majors[1]! - majors[0]! : 2;
+  const offset = majors[0] ?? 0;
+  return gap % 2 === 0 ? all.filter((_, i) => (i - offset) % (gap / 2) === 0) : all;
+}
+
+function CurveName({ onsets, places, base }: JoinedChartProps & { places: Places; base: number }) {
+  const at = onsets[0] === undefined ? PAD + 56 : places.x(Math.min(...onsets)) + 36;
+  return (
+    <Name x={at} y={base - 82}>
+      predicted amplitude
+    </Name>
+  );
+}
+
+function largest({ predicted, observations }: JoinedChartProps): number {
+  const values = [
+    ...(predicted?.amplitude ?? []),
+    ...observations.map((o) => o.measure?.high ?? null),
+  ].filter((v): v is number => v !== null && Number.isFinite(v));
+  return Math.max(0, ...values);
+}
+
+function sentence(props: JoinedChartProps): string {
+  const unit = unitText(props.amplitudeUnit);
+  const top = Math.max(0, ...(props.predicted?.amplitude ?? []).map((v) => v ?? 0));
+  const expected = props.predicted ? `Predicted amplitude up to ${figure(top)} ${unit}.` : '';
+  const seen = props.observations.map((o) =>
+    o.measure
+      ? `${o.state} at ${figure(o.control)} ${unitText(props.unit)}, amplitude ${figure(o.measure.value)} ${unit}`
+      : `${o.state} at ${figure(o.control)} ${unitText(props.unit)}`,
+  );
+  return `Amplitude against ${props.label}. ${expected} ${
+    seen.length > 0 ? `Observed: ${seen.join('; ')}.` : 'Nothing observed yet.'
+  }`.replaceAll('  ', ' ');
+}
