@@ -102,7 +102,7 @@ function MoveForm(props: {
     const form = new FormData(event.currentTarget);
     const when = zoned(`${form.get(`day-${s.id}`)}T${form.get(`time-${s.id}`)}`, zone);
     const personId = String(form.get(`person-${s.id}`) ?? s.personId);
-    if (when.isValid) props.onMove(s, when.toUTC().toISO()!, personId);
+    props.onMove(s, when.toJSDate().toISOString(), personId);
   }
   return (
     <li className="border-b border-rule bg-selected px-4 py-3">

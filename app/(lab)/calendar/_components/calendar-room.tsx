@@ -1,0 +1,155 @@
+'use client';
+
+import clsx from 'clsx';
+import { DateTime } from 'luxon';
+import dynamic from 'next/dynamic';
+import Link from 'next/link';
+import { useRouter } from 'next/navigation';
+import { useCallback, useState } from 'react';
+import { SessionList } from '@/components/calendar/session-list';
+import type { CalendarPerson, CalendarSession } from '@/components/calendar/types';
+import { ActionProblem, useAction } from '@/components/forms';
+import { EmptyState, KeyLink } from '@/components/ui';
+import { moveSessionAction } from '../actions';
+import type { ShownView } from '../range';
+
+const SessionCalendar = dynamic(
+  () => import('@/components/calendar/session-calendar').then((m) => m.SessionCalendar),
+  { ssr: false, loading: () => <div className="h-[860px] border border-rule bg-plate" /> },
+);
+
+type Props = {
+  sessions: CalendarSession[];
+  people: CalendarPerson[];
+  zone: string;
+  view: ShownView;
+  date: string;
+  who: 'everybody' | 'mine';
+  studyId: string | null;
+  mayAssign: boolean;
+};
+
+const VIEWS: { view: ShownView; name: string }[] = [
+  { view: 'day', name: 'Day' },
+  { view: 'week', name: 'Week' },
+  { view: 'month', name: 'Month' },
+  { view: 'list', name: 'List' },
+];
+
+function address(props: Pick<Props, 'view' | 'date' | 'who' | 'studyId'>): string {
+  const query = new URLSearchParams({ view: props.view, date: props.date, who: props.who });
+  if (props.studyId) query.set('study', props.studyId);
+  return `/calendar?${query}`;
+}
+
+/** Views, steps through time, and the sessions; a refused move says why and changes nothing. */
+export function CalendarRoom(props: Props) {
+  const { sessions, people, zone, view, date, who, mayAssign } = props;
+  const router = useRouter();
+  const [said, setSaid] = useState('');
+  const onDone = useCallback(
+    (moved: { moved: number }) => {
+      setSaid(
+        moved.moved > 1 ? `Moved, with ${moved.moved - 1} later sessions of the run.` : 'Moved.',
+      );
+      router.refresh();
+    },
+    [router],
+  );
+  const { run, problem, pending } = useAction(moveSessionAction, { onDone });
+  const move = (session: CalendarSession, startsAt: string, personId?: string) => {
+    setSaid('');
+    void run({
+      sessionId: session.id,
+      revision: session.revision,
+      startsAt,
+      ...(personId && personId !== session.personId ? { personId } : {}),
+    });
+  };
+  return (
+    <div className="mt-4 flex flex-col gap-4">
+      <Steps {...props} />
+      <div aria-live="polite" className="empty:hidden">
+        {pending ? 'Asking whether it can be moved …' : said}
+      </div>
+      <ActionProblem problem={problem} />
+      {sessions.length === 0 && view === 'list' ? (
+        <EmptyState
+          title="No sessions in this week."
+          action={<KeyLink href="/studies">To the studies</KeyLink>}
+        >
+          {who === 'mine'
+            ? 'None of yours; others may have some.'
+            : 'An approved series brings them.'}
+        </EmptyState>
+      ) : view === 'list' ? (
+        <SessionList
+          sessions={sessions}
+          people={people}
+          zone={zone}
+          mayAssign={mayAssign}
+          onMove={move}
+        />
+      ) : (
+        <SessionCalendar
+          sessions={sessions}
+          zone={zone}
+          view={view}
+          date={DateTime.fromISO(date, { zone }).plus({ hours: 12 }).toISO() ?? date}
+          onMove={move}
+          onOpen={(s) => router.push(`/sessions/${s.id}`)}
+        />
+      )}
+    </div>
+  );
+}
+
+function Steps(props: Props) {
+  const { view, date, zone, who } = props;
+  const unit = view === 'list' ? 'weeks' : (`${view}s` as 'days' | 'weeks' | 'months');
+  const day = DateTime.fromISO(date, { zone });
+  const at = (steps: number) => day.plus({ [unit]: steps }).toISODate() ?? date;
+  const today = DateTime.now().setZone(zone).toISODate() ?? date;
+  const key =
+    'press inline-flex min-h-10 items-center border border-edge px-3 pointer-coarse:min-h-12';
+  return (
+    <div className="flex flex-wrap items-center gap-x-6 gap-y-3 print:hidden">
+      <nav aria-label="View" className="flex">
+        {VIEWS.map((v) => (
+          <Link
+            key={v.view}
+            href={address({ ...props, view: v.view })}
+            aria-current={v.view === view ? 'page' : undefined}
+            className={clsx(
+              key,
+              '-ml-px first:ml-0',
+              v.view === view ? 'bg-selected font-bold' : 'text-ink2 hover:text-ink',
+            )}
+          >
+            {v.name}
+          </Link>
+        ))}
+      </nav>
+      <nav aria-label="Time" className="flex items-center gap-2">
+        <Link className={key} href={address({ ...props, date: at(-1) })}>
+          Earlier
+        </Link>
+        <Link className={key} href={address({ ...props, date: today })}>
+          Now
+        </Link>
+        <Link className={key} href={address({ ...props, date: at(1) })}>
+          Later
+        </Link>
+      </nav>
+      <Link
+        className={clsx(key, who === 'mine' ? 'bg-selected font-bold' : 'text-ink2')}
+        href={address({ ...props, who: who === 'mine' ? 'everybody' : 'mine' })}
+      >
+        {who === 'mine' ? 'Only mine' : 'Everybody'}
+      </Link>
+      <p className="text-caption text-ink2">
+        Times in {zone}. Drag a block to move it; by keyboard, use the list.
+      </p>
+    </div>
+  );
+}
