@@ -7,6 +7,7 @@ import {
   type PredictedOnset,
   type PredictRequest,
 } from '@/lib/contracts';
+import { cyclesAlongBranch } from './cycles/along-branch';
 import { checkDoseMap, controlToDose } from './dose-map';
 import { checkDelays } from './equations/check-delays';
 import { compileModel } from './equations/compile';
@@ -41,9 +42,34 @@ export function predict(request: PredictRequest, hooks: PredictHooks = {}): Pred
     request.draws > 0 ? propagate(system, request, range, analysis, hooks) : plain.map(() => null);
   const onsets = plain.map((o, k) => ({ ...o, spread: spreads[k] ?? null }));
   notes.push(...spreadNotes(onsets));
-  const cycles: Cycle[] = [];
+  const branch = branchAnswer(analysis);
+  const cycles = request.cycles ? cyclesOf(system, range, branch, onsets, notes, hooks) : [];
   hooks.progress?.(request.draws, request.draws, 'done');
-  return { onsets, branch: branchAnswer(analysis), cycles, notes };
+  return { onsets, branch, cycles, notes };
+}
+
+/** The oscillations themselves, where they can be followed; what cannot be is noted, never invented. */
+function cyclesOf(
+  system: CompiledSystem,
+  range: Range,
+  branch: Branch,
+  onsets: readonly PredictedOnset[],
+  notes: Note[],
+  hooks: PredictHooks,
+): Cycle[] {
+  hooks.progress?.(0, 1, 'following the oscillation');
+  const { cycles, omitted } = cyclesAlongBranch(system, system.values, range.controlIndex, {
+    branch,
+    onsets,
+  });
+  if (omitted.length > 0) {
+    const first = omitted[0]!;
+    notes.push({
+      code: 'cycles-incomplete',
+      text: `at ${omitted.length} of ${omitted.length + cycles.length} control values no cycle is given; at ${Number(first.control.toPrecision(6))}: ${first.why}`,
+    });
+  }
+  return cycles;
 }
 
 function rangeOf(system: CompiledSystem, request: PredictRequest): Range {

@@ -5,7 +5,7 @@ import { type FollowedBranch, followBranch } from '../steady/branch';
 import { type Equilibrium, findEquilibrium } from '../steady/equilibrium';
 import { BranchContext } from '../steady/node';
 import { Problem } from '../steady/problem';
-import { type Scan, scanBranch } from './scan';
+import { refineEvent, type Scan, scanBranch } from './scan';
 
 export interface Analysis {
   readonly context: BranchContext;
@@ -74,12 +74,12 @@ export function analysisNotes(analysis: Analysis): Note[] {
     if (event.kind === 'fold') {
       notes.push({
         code: 'fold',
-        text: `the branch of steady states turns round (fold) at ${where(event.control)}`,
+        text: `the branch of steady states turns round (fold) at ${where(refineEvent(context, event))}`,
       });
     } else if (event.kind === 'real-crossing') {
       notes.push({
         code: 'real-eigenvalue-crossing',
-        text: `a real eigenvalue crosses zero at ${where(event.control)}: the steady state changes stability without an oscillation`,
+        text: `a real eigenvalue crosses zero at ${where(refineEvent(context, event))}: the steady state changes stability without an oscillation`,
       });
     }
   }

@@ -11,6 +11,8 @@ export interface Onset extends Crossing {
 export interface StabilityEvent {
   readonly kind: 'real-crossing' | 'fold' | 'further-pair' | 'unresolved';
   readonly control: number;
+  /** The neighbours that enclose a fold or real crossing. */
+  readonly between?: readonly [Node, Node];
 }
 
 export interface Scan {
@@ -79,18 +81,24 @@ function giveUp(scan: Scan, a: Node, b: Node, change: number): void {
 
 /** One real root changed sign: at a fold the control turns round there, elsewhere it does not. */
 function recordReal(scan: Scan, a: Node, b: Node): void {
-  const fold = a.controlSlope * b.controlSlope < 0;
   scan.events.push({
-    kind: fold ? 'fold' : 'real-crossing',
-    control: fold ? extremeControl(a, b) : (a.control + b.control) / 2,
+    kind: a.controlSlope * b.controlSlope < 0 ? 'fold' : 'real-crossing',
+    control: (a.control + b.control) / 2,
+    between: [a, b],
   });
 }
 
-/** The turning value of the control between two nodes, from its slopes. */
-function extremeControl(a: Node, b: Node): number {
-  const share = a.controlSlope / (a.controlSlope - b.controlSlope);
-  const pick = a.controlSlope > 0 ? Math.max : Math.min;
-  return pick(a.control, b.control, a.control + share * (b.control - a.control));
+/** The control at which a fold or real crossing lies, to about 1e-6 of a step, by halving. */
+export function refineEvent(context: BranchContext, event: StabilityEvent): number {
+  if (!event.between) return event.control;
+  let [a, b] = event.between;
+  for (let i = 0; i < 20; i++) {
+    const mid = midNode(context, a, b);
+    if (!mid) break;
+    if (mid.spectrum.unstable === a.spectrum.unstable) a = mid;
+    else b = mid;
+  }
+  return (a.control + b.control) / 2;
 }
 
 function chord(context: BranchContext, a: Node, b: Node): number {

@@ -213,6 +213,22 @@ export function characteristicMatrix(
 }
 
 /**
+ * Null vectors for a root that is already accurate: one solve with generic borders, one with borders
+ * from its answer. False where the bordered matrix is singular.
+ */
+export function nullVectors(
+  work: Characteristic,
+  scale: Float64Array,
+  re: number,
+  im: number,
+): boolean {
+  work.reset(scale);
+  if (!work.solve(re, im)) return false;
+  work.adapt();
+  return work.solve(re, im);
+}
+
+/**
  * Newton on g(λ) from a guess, borders adapted as it goes. Converged: a step below 1e-13 of the
  * larger of |λ| and `floor` (a small share of the spectrum's size, for roots at zero), or at the rounding
  * floor. At most 30 steps. The null vectors stay in `work`.

@@ -30,7 +30,9 @@ export function findEquilibrium(
   }
   const flow = settle(problem, start, control, Float64Array.from(seen));
   if (flow.outcome === 'settled') return { x: tidy(flow.x, problem), route: 'flow' };
-  for (const guess of restarts(flow.mean, flow.x, start)) {
+  const guesses =
+    flow.outcome === 'diverged' ? restarts([start]) : restarts([flow.mean, flow.x, start]);
+  for (const guess of guesses) {
     if (newton(problem, guess, control, Float64Array.from(seen)) === 'converged') {
       return { x: tidy(guess, problem), route: 'restart' };
     }
@@ -42,8 +44,10 @@ export function findEquilibrium(
   );
 }
 
-function restarts(mean: Float64Array, end: Float64Array, start: Float64Array): Float64Array[] {
-  const base = [mean, end, start].filter((g) => g.every((v) => Number.isFinite(v)));
+/** Other guesses: multiples of the given states, and the first with its components moved apart. */
+function restarts(base: readonly Float64Array[]): Float64Array[] {
+  const mean = base[0]!;
+  const start = base[base.length - 1]!;
   const factors = [1, 0.3, 3, 0.1, 10, 0.03, 30, 0.01];
   const out = factors.flatMap((k) => base.map((g) => g.map((v) => k * v)));
   const n = start.length;

@@ -4,7 +4,7 @@ import { newton, scaledSize } from './newton';
 import { type Problem, stateScale } from './problem';
 
 export interface FlowResult {
-  readonly outcome: 'settled' | 'not-settled' | 'left-physical-range';
+  readonly outcome: 'settled' | 'not-settled' | 'left-physical-range' | 'diverged';
   readonly x: Float64Array;
   /** Time average of the state over the second half of the steps: a guess inside an oscillation. */
   readonly mean: Float64Array;
@@ -30,11 +30,16 @@ export function settle(
   const mean = new Float64Array(n);
   const scale = new Float64Array(n);
   let weight = 0;
+  let early: Float64Array | null = null;
   let h = initialStep(problem, x, control, seen);
   for (let step = 1; step <= 4000; step++) {
     stateScale(x, seen, scale);
     const used = rosenbrockStep(problem, x, control, scale, h);
-    if (used.outcome === 'failed') break;
+    if (used.outcome === 'failed') return { outcome: 'diverged', x, mean };
+    if (step === 20) early = x.map((v, i) => Math.max(Math.abs(v), seen[i]!));
+    if (early?.some((e, i) => Math.abs(x[i]!) > 1e12 * e && e > 0)) {
+      return { outcome: 'diverged', x, mean };
+    }
     if (
       !problem.isPhysical(
         x,

@@ -23,6 +23,8 @@ export function newton(
   const scale = new Float64Array(n);
   const matrix = new Float64Array(n * n);
   const pivots = new Int32Array(n);
+  const largest = Float64Array.from(seen);
+  const reference = x.map((v, i) => Math.max(Math.abs(v), seen[i]!));
   let last = Number.POSITIVE_INFINITY;
   for (let iteration = 0; iteration < cap; iteration++) {
     if (!problem.linearise(x, control)) return 'no-convergence';
@@ -31,8 +33,12 @@ export function newton(
     if (lu.outcome === 'singular') return 'singular';
     for (let i = 0; i < n; i++) step[i] = -problem.f[i]!;
     luSolve(lu, step);
-    stateScale(x, seen, scale);
-    const size = scaledSize(step, scale);
+    if (iteration === 0) {
+      for (let i = 0; i < n; i++) reference[i] = Math.max(reference[i]!, Math.abs(step[i]!));
+    }
+    stateScale(x, largest, scale);
+    if (ranAway(x, reference)) return 'no-convergence';
+    const size = scaledSize(step, tightened(x, scale));
     if (!Number.isFinite(size)) return 'singular';
     if (size < 1e-12 || (size < 1e-9 && size >= last / 4)) {
       for (let i = 0; i < n; i++) x[i] = x[i]! + step[i]!;
@@ -45,13 +51,25 @@ export function newton(
       if (!problem.residual(trial, control)) continue;
       const next = Float64Array.from(problem.f, (v) => -v);
       luSolve(lu, next);
-      if (scaledSize(next, scale) <= (1 - damping / 4) * size) break;
+      if (scaledSize(next, tightened(x, scale)) <= (1 - damping / 4) * size) break;
     }
     if (damping <= 1e-5) return 'no-convergence';
     x.set(trial);
     if (!problem.isPhysical(x, scale)) return 'left-physical-range';
   }
   return 'no-convergence';
+}
+
+/** An iterate far beyond guess and first correction can only be on its way to infinity. */
+function ranAway(x: Float64Array, reference: Float64Array): boolean {
+  return x.some((v, i) => Math.abs(v) > 1e10 * reference[i]! && reference[i]! > 0);
+}
+
+/** Components that are not zero to rounding are judged by their own size, whatever was passed on the way. */
+function tightened(x: Float64Array, scale: Float64Array): Float64Array {
+  return scale.map((s, i) =>
+    Math.abs(x[i]!) > 1e-13 * s ? Math.max(Math.abs(x[i]!), 1e-9 * s) : s,
+  );
 }
 
 /** Largest |v_i| / scale_i. */

@@ -1,5 +1,5 @@
 import { luFactor, luSolve } from '../linalg/lu';
-import { Characteristic, polishRoot } from './characteristic';
+import { Characteristic, nullVectors } from './characteristic';
 import { ModeChange } from './mode-change';
 import { type Problem, stateScale } from './problem';
 import { type Root, type Spectrum, spectrum } from './spectrum';
@@ -110,14 +110,14 @@ export function makeNode(
   if (!tangent) return null;
   const spec = spectrum(problem, work, scale);
   const complex: TrackedRoot[] = [];
+  // A root far from the axis for its size does not reach it within one step.
   const candidates = spec.roots
-    .filter((r) => r.im > 1e-9 * spec.norm)
+    .filter((r) => r.im > 1e-9 * spec.norm && Math.abs(r.re) < 0.8 * Math.hypot(r.re, r.im))
     .sort((p, q) => Math.abs(p.re) - Math.abs(q.re))
-    .slice(0, 6);
+    .slice(0, 4);
   for (const root of candidates) {
-    const exact = polishRoot(work, scale, root.re, root.im, 1e-6 * spec.norm);
-    if (!exact || Math.hypot(exact.re - root.re, exact.im - root.im) > 1e-4 * spec.norm) continue;
-    change.take(exact);
+    if (!nullVectors(work, scale, root.re, root.im)) continue;
+    change.take(root);
     const slope = change.rootSlope(tangent.dx, tangent.dControl);
     if (!Number.isFinite(slope.re) || !Number.isFinite(slope.im)) continue;
     complex.push({ re: root.re, im: root.im, slope });
