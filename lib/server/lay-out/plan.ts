@@ -1,14 +1,8 @@
-import type { VisitKind } from '@/db/schema';
-import type { LayOutRequest } from '@/lib/contracts';
+import type { PlannedVisit } from '@/lib/planner/cadence/visit-times';
 
-export type PlannedVisit = {
-  kind: VisitKind;
-  label: string;
-  atMinutes: number;
-  minutes: number;
-  earlyMinutes: number;
-  lateMinutes: number;
-};
+export type { PlannedVisit };
+
+import type { LayOutRequest } from '@/lib/contracts';
 
 /** One run that a lay-out has to place; `bookingId` is its name in the engine's request. */
 export type RunPlan = {

@@ -1,0 +1,24 @@
+import type { DesignAnswer, DesignRequest } from '@/lib/contracts';
+import { designEdges } from '@/lib/planner/design/design-edges';
+import type { DesignedLevel, DesignPlan } from '../../series/design-plan';
+import { timeLevel } from '../../series/time-level';
+import type { Work } from '../kind';
+
+export type DesignResult = {
+  levels: DesignedLevel[];
+  designs: { request: DesignRequest; answer: DesignAnswer }[];
+  notes: string[];
+};
+
+/** Chooses the levels of every edge, merges them into one order, and times each. */
+export const workDesign: Work = (input, progress) => {
+  const plan = input as DesignPlan;
+  progress(0, plan.requests.length, 'choosing levels');
+  const merged = designEdges(plan.requests);
+  const result: DesignResult = {
+    levels: merged.levels.map((row) => timeLevel(plan, row)),
+    designs: plan.requests.map((request, i) => ({ request, answer: merged.edges[i]! })),
+    notes: merged.notes.map((n) => n.text),
+  };
+  return result;
+};
