@@ -1,0 +1,116 @@
+import type { Metadata } from 'next';
+import { notFound } from 'next/navigation';
+import { EmptyState, FailedState, KeyLink } from '@/components/ui';
+import { latestPrediction, latestPredictJob } from '@/db/queries/predictions';
+import { studyById } from '@/db/queries/studies';
+import { levelMarks, observedOnsets } from '@/db/queries/study-ribbons';
+import { latestSystem } from '@/db/queries/systems';
+import { stampText } from '@/lib/format';
+import { database } from '@/lib/server/database';
+import { may, pageMember } from '@/lib/server/member';
+import { PredictPanel } from './_components/predict-panel';
+import { PredictionView } from './_components/prediction-view';
+
+export const metadata: Metadata = { title: 'Prediction' };
+
+const DEFAULT_DRAWS = 400;
+const DEFAULT_SEED = 1;
+
+/** Where the study's system begins to oscillate, how fast, and how long to wait. */
+export default async function PredictionPage({ params }: { params: Promise<{ studyId: string }> }) {
+  const member = await pageMember();
+  const { labId } = member;
+  const { studyId } = await params;
+  const db = database();
+  const of = { labId, studyId };
+  const study = await studyById(db, of);
+  if (!study) notFound();
+  const [system, prediction, job] = await Promise.all([
+    latestSystem(db, of),
+    latestPrediction(db, of),
+    latestPredictJob(db, of),
+  ]);
+  if (!system) notFound();
+  const predicts = may(member, 'predict');
+  const stale = prediction !== null && prediction.systemNumber !== system.number;
+  const active = job?.state === 'queued' || job?.state === 'running' ? job : null;
+  const failed = job?.state === 'failed' ? job : null;
+  const panel = {
+    studyId,
+    systemNumber: system.number,
+    activeJobId: active?.id ?? null,
+    draws: prediction?.request.draws ?? DEFAULT_DRAWS,
+    seed: prediction?.request.seed ?? DEFAULT_SEED,
+    keyKind: prediction === null || stale ? ('filled' as const) : ('outlined' as const),
+    keyName: prediction === null ? 'Predict' : 'Predict again',
+  };
+  const wanted = { labId, studyIds: [studyId] };
+  return (
+    <>
+      {failed ? <Failed error={failed.error} studyId={studyId} kept={prediction !== null} /> : null}
+      {prediction === null ? (
+        <NoPrediction predicts={predicts} working={active !== null} panel={panel} />
+      ) : (
+        <>
+          {stale ? (
+            <p className="mb-4 border-l-[3px] border-ink bg-plate px-4 py-2">
+              From System v{prediction.systemNumber}; the newest is v{system.number}. Nothing below
+              holds for v{system.number} until it is predicted again.
+            </p>
+          ) : null}
+          <PredictionView
+            study={study}
+            prediction={prediction}
+            newestSystem={system.number}
+            levels={await levelMarks(db, wanted)}
+            observed={(await observedOnsets(db, wanted)).get(studyId) ?? []}
+            at={stampText(prediction.createdAt, member.lab.timeZone)}
+            actions={predicts ? <PredictPanel {...panel} /> : null}
+          />
+        </>
+      )}
+    </>
+  );
+}
+
+function Failed(props: { error: string | null; studyId: string; kept: boolean }) {
+  const { error, studyId, kept } = props;
+  return (
+    <div className="mb-6">
+      <FailedState
+        title="The prediction failed"
+        safe={
+          kept
+            ? 'The earlier prediction below is kept as it was.'
+            : 'The system is kept as it was; nothing else was changed.'
+        }
+        action={<KeyLink href={`/studies/${studyId}/system`}>Look at the system</KeyLink>}
+      >
+        <p>{error}</p>
+      </FailedState>
+    </div>
+  );
+}
+
+type NoPredictionProps = {
+  predicts: boolean;
+  working: boolean;
+  panel: React.ComponentProps<typeof PredictPanel>;
+};
+
+function NoPrediction({ predicts, working, panel }: NoPredictionProps) {
+  const title = working ? 'The first prediction is being worked out' : 'Nothing predicted yet';
+  if (!predicts) {
+    return <EmptyState title={title}>The head or an investigator can predict.</EmptyState>;
+  }
+  return (
+    <PredictPanel {...panel}>
+      <div className="mb-6">
+        <EmptyState title={title}>
+          The prediction says where the steady state turns into a sustained oscillation, how sure
+          that is, and how long to wait at each level.
+        </EmptyState>
+      </div>
+    </PredictPanel>
+  );
+}

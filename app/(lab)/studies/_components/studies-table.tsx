@@ -1,0 +1,82 @@
+import Link from 'next/link';
+import { OnsetRibbon } from '@/components/ribbon';
+import { type Column, DataTable } from '@/components/ui';
+import type { StudyListRow } from './row-of';
+
+function Title({ row }: { row: StudyListRow }) {
+  return (
+    <span className="block min-w-56 py-1.5 leading-5">
+      <Link href={`/studies/${row.id}`} className="underline-offset-4 hover:underline">
+        {row.title}
+      </Link>
+      {row.simulated ? (
+        <span className="ml-2 border border-edge px-1 text-caption font-normal whitespace-nowrap text-ink2">
+          simulated readings
+        </span>
+      ) : null}
+    </span>
+  );
+}
+
+function Lines({ lines, none }: { lines: string[]; none: string }) {
+  if (lines.length === 0) return <span className="text-ink2">{none}</span>;
+  return (
+    <span className="block whitespace-nowrap">
+      {lines.map((line) => (
+        <span key={line} className="block">
+          {line}
+        </span>
+      ))}
+    </span>
+  );
+}
+
+function Reached({ row }: { row: StudyListRow }) {
+  return (
+    <span className="block min-w-36 leading-5">
+      {row.reached.name}, {row.reached.fact}
+      {row.missing ? (
+        <span className="block text-caption text-ink2">waits for {row.missing}</span>
+      ) : null}
+    </span>
+  );
+}
+
+const columns: Column<StudyListRow>[] = [
+  { key: 'title', head: 'Study', strong: true, cell: (row) => <Title row={row} /> },
+  {
+    key: 'perturbs',
+    head: 'Perturbs',
+    cell: (row) => <span className="whitespace-nowrap">{row.perturbs}</span>,
+  },
+  {
+    key: 'ribbon',
+    head: 'Control range',
+    cell: (row) =>
+      row.ribbon ? (
+        <span className="block w-40">
+          <OnsetRibbon size="list" {...row.ribbon} />
+        </span>
+      ) : (
+        <span className="text-ink2">no prediction yet</span>
+      ),
+  },
+  {
+    key: 'predicted',
+    head: 'Predicted onset',
+    cell: (row) => <Lines lines={row.predicted} none={row.ribbon ? 'none in the range' : '–'} />,
+  },
+  {
+    key: 'observed',
+    head: 'Observed onset',
+    cell: (row) => <Lines lines={row.observed} none="–" />,
+  },
+  { key: 'reached', head: 'How far', cell: (row) => <Reached row={row} /> },
+];
+
+/** The lab's studies, each with its ribbon. */
+export function StudiesTable({ rows }: { rows: StudyListRow[] }) {
+  return (
+    <DataTable caption="Studies of the lab" columns={columns} rows={rows} rowKey={(r) => r.id} />
+  );
+}

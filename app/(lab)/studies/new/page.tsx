@@ -1,0 +1,63 @@
+import type { Metadata } from 'next';
+import { PageHead } from '@/components/frame';
+import { Caution, ForbiddenState, KeyLink } from '@/components/ui';
+import { studiesOfLab, usableRigs } from '@/db/queries/studies';
+import { database } from '@/lib/server/database';
+import { may, pageMember } from '@/lib/server/member';
+import { library } from '@/lib/sim/library';
+import { NewStudyForm } from './_components/new-study-form';
+
+export const metadata: Metadata = { title: 'New study' };
+
+/** A study starts from a published model or from the newest system of a study here. */
+export default async function NewStudyPage({
+  searchParams,
+}: {
+  searchParams: Promise<{ model?: string }>;
+}) {
+  const member = await pageMember();
+  if (!may(member, 'write system')) {
+    return (
+      <ForbiddenState
+        title="You cannot start a study"
+        who="The head or an investigator can."
+        action={<KeyLink href="/studies">Back to the studies</KeyLink>}
+      />
+    );
+  }
+  const { labId } = member;
+  const db = database();
+  const [studies, rigs] = await Promise.all([
+    studiesOfLab(db, { labId }),
+    usableRigs(db, { labId }),
+  ]);
+  const { model: wanted } = await searchParams;
+  return (
+    <>
+      <PageHead title="New study" />
+      <NewStudyForm
+        models={library.map((m) => ({
+          id: m.id,
+          title: m.title,
+          summary: m.summary,
+          source: sourceLine(m.source),
+          perturbs: m.perturbs,
+          doseLabel: m.doseLabel,
+          doseUnit: m.doseUnit,
+        }))}
+        studies={studies.map(({ id, title, perturbs, doseLabel, doseUnit }) => ({
+          id,
+          title,
+          perturbs,
+          doseLabel,
+          doseUnit,
+        }))}
+        rigs={rigs}
+        wanted={library.find((m) => m.id === wanted)?.id ?? null}
+      />
+      <div className="mt-6">
+        <Caution />
+      </div>
+    </>
+  );
+}
