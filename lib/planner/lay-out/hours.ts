@@ -20,9 +20,6 @@ const CALENDAR_FREQUENCIES = new Set<number | undefined>([
   RRule.MONTHLY,
   RRule.YEARLY,
 ]);
-/** Ten years of days: past this a recurrence is asked for more than any plan needs. */
-const MAX_OCCURRENCES = 3700;
-
 function refuse(text: string, at: string): never {
   throw new EngineError('invalid-request', text, at);
 }
@@ -42,19 +39,22 @@ export function parseRule(rrule: string, at: string): Partial<Options> {
   if (/(^|;)BY(HOUR|MINUTE|SECOND)=/i.test(text)) {
     refuse('Clock times belong in "from" and "to", not in the recurrence.', at);
   }
-  let options: Partial<Options>;
-  try {
-    options = RRule.parseString(text);
-    new RRule({ ...options, dtstart: new Date(0) });
-  } catch (cause) {
-    const why = cause instanceof Error ? cause.message : 'it cannot be read';
-    refuse(`"${rrule}" is no recurrence of RFC 5545 (${why}).`, at);
-  }
+  const options = tryRead(() => RRule.parseString(text), rrule, at);
   if (!CALENDAR_FREQUENCIES.has(options.freq)) {
     refuse('Working hours repeat by day, week, month or year; choose one of these for FREQ.', at);
   }
   checkCounts(options, text, at);
+  tryRead(() => new RRule({ ...options, dtstart: new Date(0) }), rrule, at);
   return options;
+}
+
+function tryRead<T>(read: () => T, rrule: string, at: string): T {
+  try {
+    return read();
+  } catch (cause) {
+    const why = cause instanceof Error ? cause.message : 'it cannot be read';
+    return refuse(`"${rrule}" is no recurrence of RFC 5545 (${why}).`, at);
+  }
 }
 
 function checkCounts(options: Partial<Options>, text: string, at: string): void {
@@ -83,6 +83,24 @@ function clockToMs(clock: string): number {
   return (Number(h) * 60 + Number(m)) * MINUTE;
 }
 
+class PastHorizon extends Error {}
+
+/**
+ * A rule that never matches again (30 February) would be searched up to the year 9999, many seconds
+ * long. The search reads `bymonth` once for each day it looks at, so counting the reads ends it
+ * beyond the horizon, when all occurrences within are found.
+ */
+function boundSearch(rule: RRule, days: number): void {
+  const months = rule.options.bymonth;
+  let looked = 0;
+  Object.defineProperty(rule.options, 'bymonth', {
+    get: () => {
+      if (looked++ > days) throw new PastHorizon();
+      return months;
+    },
+  });
+}
+
 /** The local dates (wall midnights written as UTC, ms) of a recurrence from `first` to `last`. */
 function occurrenceDates(
   hours: Hours,
@@ -98,12 +116,18 @@ function occurrenceDates(
     dtstart: new Date(begin),
     until: untilWall(hours.rrule, options, zone),
   });
+  const end = new Date(last + DAY - 1);
   const dates: number[] = [];
-  rule.between(new Date(begin), new Date(last + DAY - 1), true, (date, i) => {
-    if (i >= MAX_OCCURRENCES) return false;
+  const collect = (date: Date) => {
     dates.push(Math.floor(date.getTime() / DAY) * DAY);
     return true;
-  });
+  };
+  boundSearch(rule, 2 * ((last - first) / DAY) + 2000);
+  try {
+    rule.between(new Date(begin), end, true, collect);
+  } catch (cause) {
+    if (!(cause instanceof PastHorizon)) throw cause;
+  }
   return dates;
 }
 
