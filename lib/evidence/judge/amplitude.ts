@@ -86,7 +86,10 @@ function amplitudeTrend(sequence: Phasor[]) {
   const n = amplitudes.length;
   const mean = amplitudes.reduce((s, v) => s + v / n, 0);
   const variation = Math.sqrt(amplitudes.reduce((s, v) => s + (v - mean) ** 2 / (n - 1), 0)) / mean;
-  const columns = trendColumns(Float64Array.from(sequence, (p) => p.time), 1);
+  const columns = trendColumns(
+    Float64Array.from(sequence, (p) => p.time),
+    1,
+  );
   const logs = amplitudes.map((v) => Math.log(Math.max(v, 1e-6 * mean)));
   const fit = leastSquares(columns, logs);
   const x = columns[1]!;
@@ -140,7 +143,10 @@ export function lateAmplitude(
       time.map((v) => Math.sin(angle * v)),
     );
   }
-  const fit = leastSquares(columns, index.map((i) => y[i]!));
+  const fit = leastSquares(
+    columns,
+    index.map((i) => y[i]!),
+  );
   let [low, high] = [Infinity, -Infinity];
   for (let k = 0; k < 180; k++) {
     let v = 0;

@@ -1,10 +1,25 @@
 import type { JudgeRequest } from '@/lib/contracts';
 import { lateAmplitude, phasors, type RingTest, ringTest } from './amplitude';
 import { secondOrderRhythm, yuleWalker } from './autoregression';
-import { type DrivenFit, drivenModel, fitDriven, type GrowthInterval, growthInterval } from './driven';
-import { leastSquares } from './least-squares';
+import {
+  type DrivenFit,
+  type DrivenModel,
+  drivenModel,
+  fitDrift,
+  fitDriven,
+  type GrowthInterval,
+  growthInterval,
+} from './driven';
+import { type Columns, leastSquares } from './least-squares';
 import { bestNull, type Null } from './nulls';
-import { type Bounds, bestOscillation, bic, fitOscillation, type Oscillation, trendColumns } from './oscillation';
+import {
+  type Bounds,
+  bestOscillation,
+  bic,
+  fitOscillation,
+  type Oscillation,
+  trendColumns,
+} from './oscillation';
 import { baluevFalseAlarm, leadingPeaks, periodogram } from './periodogram';
 import type { Series } from './prepare';
 
@@ -35,25 +50,65 @@ export type Rhythm = {
 export function analyse(full: Series, expected: JudgeRequest['expectedPeriod']): Analysis {
   const floor = Math.max(0.7 * (full.noise ?? 0), 0.01);
   const bounds = frequencyBounds(full, expected);
-  const first = search(full, bounds, floor);
-  const cleaned = first.oscillation ? withoutLoneOutliers(full, first.oscillation.residuals) : full;
+  const cleaned = withoutOutliers(full, roughResiduals(full, bounds));
   const outliers = full.t.length - cleaned.t.length;
-  const { none, oscillation, falseAlarm } = outliers > 0 ? search(cleaned, bounds, floor) : first;
+  const { none, oscillation, falseAlarm } = search(cleaned, bounds, floor);
   const bare = { null: none, falseAlarm, maxFrequency: bounds.maxFrequency, outliers };
   if (oscillation === null) return { ...bare, evidence: -Infinity, rhythm: null };
   const n = cleaned.t.length;
   const trend = trendColumns(cleaned.t, oscillation.trendDegree);
   const plain = cleaned.y.map((v, i) => v - oscillation.overtones[i]!);
-  const model = drivenModel(cleaned.t, plain, trend, floor, bounds);
-  const driven = fitDriven(model, drivenStarts(cleaned, oscillation));
-  if (driven === null) return { ...bare, evidence: -Infinity, rhythm: null };
+  const fitted = fitWithDrift(cleaned, plain, trend, floor, bounds, oscillation);
+  if (fitted === null) return { ...bare, evidence: -Infinity, rhythm: null };
+  const { model, driven } = fitted;
   const search_ = Math.log(Math.max(2, bounds.maxFrequency - bounds.minFrequency));
-  const free = 4 + oscillation.trendDegree + 2 * (oscillation.harmonics - 1);
+  const free = 4 + oscillation.trendDegree + 2 * (oscillation.harmonics - 1) + fitted.extra;
   const isDriven = driven.logLikelihood - driven.undrivenLogLikelihood > 0.5;
   const cost = ((free + (isDriven ? 1 : 0)) / 2) * Math.log(n) + search_;
   const evidence = driven.logLikelihood - cost - none.score;
   const rhythm = weigh(cleaned, oscillation, driven, growthInterval(model, driven), bounds);
   return { ...bare, evidence, rhythm };
+}
+
+/**
+ * The stochastic oscillation; where noise seems to drive it, an undriven one on a wandering level is
+ * tried beside it, so that a wandering baseline is not taken for a wandering rhythm.
+ */
+function fitWithDrift(
+  series: Series,
+  plain: Float64Array,
+  trend: Columns,
+  floor: number,
+  bounds: Bounds,
+  oscillation: Oscillation,
+): { model: DrivenModel; driven: DrivenFit; extra: number } | null {
+  const starts = drivenStarts(series, oscillation);
+  const model = drivenModel(series.t, plain, trend, floor, bounds);
+  const driven = fitDriven(model, starts);
+  if (driven === null) return null;
+  if (driven.logLikelihood - driven.undrivenLogLikelihood < 1.5) return { model, driven, extra: 0 };
+  const drift = fitDrift(series.t, plain, trend, floor, oscillation);
+  if (
+    drift === null ||
+    drift.logLikelihood - 0.5 * Math.log(series.t.length) < driven.logLikelihood
+  ) {
+    return { model, driven, extra: 0 };
+  }
+  const drifting = drivenModel(series.t, plain, trend, floor, bounds, drift);
+  const again = fitDriven(drifting, starts);
+  return again && { model: drifting, driven: again, extra: 2 };
+}
+
+/** Residuals of the best single-harmonic fit, for finding slips. */
+function roughResiduals(series: Series, bounds: Bounds): Float64Array {
+  const level = leastSquares(trendColumns(series.t, 1), series.y);
+  const points = Math.min(3000, Math.ceil(3 * (bounds.maxFrequency - bounds.minFrequency)) + 10);
+  const { minFrequency, maxFrequency } = bounds;
+  const spectrum = periodogram(series.t, level.residuals, minFrequency, maxFrequency, points);
+  const peak = leadingPeaks(spectrum, 1)[0];
+  const start = peak && { growth: 0, frequency: peak.frequency };
+  const fit = start ? fitOscillation(series, start, 1, 1, bounds) : null;
+  return fit?.residuals ?? level.residuals;
 }
 
 function weigh(
@@ -66,7 +121,13 @@ function weigh(
   const { frequency, harmonics, trendDegree } = oscillation;
   const trend = trendColumns(series.t, trendDegree);
   const level = leastSquares(trend, series.y);
-  const sequence = phasors(series.t, level.residuals, frequency, harmonics, frequency >= 40 ? 2 : 1);
+  const sequence = phasors(
+    series.t,
+    level.residuals,
+    frequency,
+    harmonics,
+    frequency >= 40 ? 2 : 1,
+  );
   const amplitude = lateAmplitude(series.t, level.residuals, frequency, harmonics);
   const sd = Math.sqrt(oscillation.rss / Math.max(1, series.t.length - 4 - 2 * harmonics));
   return {
@@ -151,19 +212,25 @@ function drivenStarts(series: Series, o: Oscillation) {
 }
 
 /**
- * Leaves out readings whose residual is over six robust sd while their neighbours fit, at most one
- * in twenty: single slips, not the spikes of a rhythm.
+ * Leaves out readings whose residual is over six robust sd, at most one in twelve, unless they come
+ * at even intervals: slips of the instrument, not the spikes of a rhythm.
  */
-function withoutLoneOutliers(series: Series, residuals: Float64Array): Series {
+function withoutOutliers(series: Series, residuals: Float64Array): Series {
   const sizes = Array.from(residuals, Math.abs).sort((a, b) => a - b);
   const limit = 6 * 1.4826 * sizes[Math.floor(sizes.length / 2)]!;
-  const far = Array.from(residuals, (r) => Math.abs(r) > limit);
-  const lone = far.map((f, i) => f && !far[i - 1] && !far[i + 1]);
-  const count = lone.filter(Boolean).length;
-  if (count === 0 || count !== far.filter(Boolean).length || count > series.t.length / 20) {
+  const far = Array.from(residuals.keys()).filter((i) => Math.abs(residuals[i]!) > limit);
+  if (far.length === 0 || far.length > series.t.length / 12 || evenlySpaced(far, series.t)) {
     return series;
   }
-  const keep = (_: number, i: number) => !lone[i];
+  const drop = new Set(far);
+  const keep = (_: number, i: number) => !drop.has(i);
   return { ...series, t: series.t.filter(keep), y: series.y.filter(keep) };
 }
 
+function evenlySpaced(index: number[], t: Float64Array): boolean {
+  if (index.length < 4) return false;
+  const gaps = index.slice(1).map((i, k) => t[i]! - t[index[k]!]!);
+  const mean = gaps.reduce((s, g) => s + g / gaps.length, 0);
+  const sd = Math.sqrt(gaps.reduce((s, g) => s + (g - mean) ** 2 / gaps.length, 0));
+  return sd < 0.3 * mean;
+}

@@ -1,5 +1,5 @@
 import type { Verdict } from '@/lib/contracts';
-import type { Analysis, Rhythm } from './analyse';
+import type { Rhythm } from './analyse';
 import { figure, plural } from './words';
 
 /** A verdict, the growth rate's 90 % interval per record, and why. */
@@ -12,30 +12,43 @@ export type Decision = {
 /** Thresholds of the verdict; measured rates are in tests/evidence/verdict-rates.test.ts. */
 export const THRESHOLDS = {
   /** Score over the best account without a rhythm. */
-  evidence: 2,
+  evidence: 3,
   /** Twice the likelihood gain at which a drive by noise counts as shown. */
-  driven: 4.5,
+  driven: 6,
+  /** Few cycles show a drive less clearly, so that less of it is enough to withhold "sustained". */
+  drivenInFewCycles: 1.5,
+  fewCycles: 7.5,
+  drivenBetween: 3,
+  manyCycles: 12,
+  lossInFewCycles: 0.35,
   /** A sustained rhythm may lose at most this many e-foldings over the record. */
   loss: 0.5,
-  sustainedCycles: 5,
+  /** Five cycles less the reading that would begin the sixth. */
+  sustainedCycles: 4.8,
+  /** A decay counts when the interval widened from 90 % to 95 % still lies below zero. */
+  widen: 1.96 / 1.645,
   ringCycles: 8,
   ringChance: 0.005,
   ringVariation: 0.35,
 } as const;
 
 export function isDriven(r: Rhythm): boolean {
-  return 2 * (r.driven.logLikelihood - r.driven.undrivenLogLikelihood) > THRESHOLDS.driven;
+  const gain = 2 * (r.driven.logLikelihood - r.driven.undrivenLogLikelihood);
+  const cycles = r.oscillation.frequency;
+  if (cycles < THRESHOLDS.fewCycles) return gain > THRESHOLDS.drivenInFewCycles;
+  return gain > (cycles < THRESHOLDS.manyCycles ? THRESHOLDS.drivenBetween : THRESHOLDS.driven);
 }
 
 /** Verdict on a record that holds a rhythm. */
-export function decideRhythm(a: Analysis, r: Rhythm, samplesPerCycle: number): Decision {
+export function decideRhythm(r: Rhythm, samplesPerCycle: number): Decision {
   const growth = { value: r.driven.growth, low: r.interval.low, high: r.interval.high };
   const cycles = r.oscillation.frequency;
   if (isDriven(r)) return decideDriven(r, growth, cycles);
   if (growth.low > 0) return decideGrowing(growth, cycles);
-  if (growth.high < 0) return decideDecaying(r, growth, cycles);
-  const limit = -THRESHOLDS.loss;
-  if (cycles >= THRESHOLDS.sustainedCycles && growth.low > limit) {
+  const high = growth.value + THRESHOLDS.widen * (growth.high - growth.value);
+  if (high < 0) return decideDecaying(r, growth, cycles);
+  const loss = cycles < THRESHOLDS.fewCycles ? THRESHOLDS.lossInFewCycles : THRESHOLDS.loss;
+  if (cycles >= THRESHOLDS.sustainedCycles && growth.low > -loss) {
     return {
       verdict: 'sustained',
       growth,
@@ -56,7 +69,11 @@ export function decideRhythm(a: Analysis, r: Rhythm, samplesPerCycle: number): D
   };
 }
 
-function decideDriven(r: Rhythm, growth: NonNullable<Decision['growth']>, cycles: number): Decision {
+function decideDriven(
+  r: Rhythm,
+  growth: NonNullable<Decision['growth']>,
+  cycles: number,
+): Decision {
   const ring = r.ring;
   if (
     ring &&
@@ -106,7 +123,7 @@ function decideGrowing(growth: NonNullable<Decision['growth']>, cycles: number):
     growth,
     reasons: [
       `The rhythm seems to grow, but only ${figure(cycles)} cycles were recorded.`,
-      `To settle it, record at least ${THRESHOLDS.sustainedCycles} cycles.`,
+      'To settle it, record at least 5 cycles.',
     ],
   };
 }
@@ -120,7 +137,7 @@ function decideDecaying(
   const levelled =
     late !== null &&
     late.growth + 1.645 * late.sd > 0 &&
-    late.growth - 1.645 * late.sd > -2 * THRESHOLDS.loss &&
+    late.growth - 1.645 * late.sd > -THRESHOLDS.loss &&
     late.growth > 0.5 * growth.value;
   if (levelled && cycles >= 2 * THRESHOLDS.sustainedCycles) {
     const half = 1.645 * late.sd;

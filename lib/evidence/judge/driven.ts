@@ -34,6 +34,7 @@ export function drivenModel(
   trend: Columns,
   floor: number,
   bounds: Bounds,
+  drift: Drift = NO_DRIFT,
 ): DrivenModel {
   const likelihood = makeLikelihood(t, y, trend, floor);
   const at = (p: Point) =>
@@ -41,7 +42,8 @@ export function drivenModel(
       growth: p.growth,
       frequency: p.frequency,
       drive: p.logDrive < LOG_DRIVE.low ? 0 : Math.exp(p.logDrive),
-      ...NO_DRIFT,
+      driftVariance: drift.driftVariance,
+      driftRate: drift.driftRate,
     });
   const inside = (p: Point) =>
     p.frequency >= bounds.minFrequency &&
@@ -53,6 +55,34 @@ export function drivenModel(
     evaluate: (p) => (inside(p) ? (at(p)?.logLikelihood ?? -Infinity) : -Infinity),
     noiseVariance: (p) => at(p)?.noiseVariance ?? Number.POSITIVE_INFINITY,
   };
+}
+
+/** A wandering level: variance over s², and relaxation rate per record. */
+export type Drift = { driftVariance: number; driftRate: number };
+
+/** Undriven oscillation near the given one, on an Ornstein–Uhlenbeck level; null when none is found. */
+export function fitDrift(
+  t: Float64Array,
+  y: Float64Array,
+  trend: Columns,
+  floor: number,
+  near: { growth: number; frequency: number },
+): (Drift & { logLikelihood: number }) | null {
+  const likelihood = makeLikelihood(t, y, trend, floor);
+  const unpack = ([logRate, logVariance]: number[]): Drift => ({
+    driftRate: Math.exp(logRate!),
+    driftVariance: Math.exp(logVariance!),
+  });
+  const objective = (x: number[]) => {
+    if (Math.abs(x[1]!) > 12 || x[0]! < 0 || x[0]! > Math.log(4 * t.length)) return Infinity;
+    const answer = likelihood({ ...near, growth: x[2]!, drive: 0, ...unpack(x) });
+    return answer === null ? Infinity : -answer.logLikelihood;
+  };
+  const runs = [2.5, Math.log(t.length) - 0.7].map((rate) =>
+    nelderMead(objective, [rate, 0, near.growth], [0.8, 1, 0.2], 0.01, 110),
+  );
+  const best = runs.reduce((a, b) => (b.value < a.value ? b : a));
+  return Number.isFinite(best.value) ? { ...unpack(best.point), logLikelihood: -best.value } : null;
 }
 
 const SCAN = [-4, -1, 1, 3, 5, 7, 9, 12];
@@ -105,7 +135,13 @@ function maximise(model: DrivenModel, from: Point, free: boolean) {
   });
   const start = [from.growth, from.frequency, ...(free ? [from.logDrive] : [])];
   const steps = [Math.max(0.3, 0.2 * Math.abs(from.growth)), 0.15, ...(free ? [1] : [])];
-  const result = nelderMead((x) => -model.evaluate(unpack(x)), start, steps, 0.005, free ? 130 : 80);
+  const result = nelderMead(
+    (x) => -model.evaluate(unpack(x)),
+    start,
+    steps,
+    0.005,
+    free ? 130 : 80,
+  );
   return { point: unpack(result.point), value: -result.value };
 }
 
@@ -161,7 +197,8 @@ export function growthInterval(model: DrivenModel, fit: DrivenFit): GrowthInterv
       let outer = inner + direction * stride;
       if (direction * (outer - limit) > 0) outer = limit;
       const p = profile(model, outer, near);
-      if (p.value < fit.logLikelihood - DROP) return { end: bisect(model, fit, inner, outer, near), open: false };
+      if (p.value < fit.logLikelihood - DROP)
+        return { end: bisect(model, fit, inner, outer, near), open: false };
       if (outer === limit) break;
       inner = outer;
       near = p.point;

@@ -30,7 +30,9 @@ export function judge(request: JudgeRequest): JudgeAnswer {
   const analysis = analyse(series, request.expectedPeriod);
   const slips =
     analysis.outliers > 0
-      ? [`${analysis.outliers} reading${analysis.outliers === 1 ? '' : 's'} far off the rest had no weight.`]
+      ? [
+          `${analysis.outliers} reading${analysis.outliers === 1 ? '' : 's'} far off the rest had no weight.`,
+        ]
       : [];
   const extra = [...slips, ...remarks];
   if (analysis.rhythm && analysis.evidence > THRESHOLDS.evidence) {
@@ -55,7 +57,7 @@ function rhythmic(
   const frequency = driven ? rhythm.driven.frequency : rhythm.oscillation.frequency;
   const period = series.span / frequency;
   const covered = coverage({ readings: series.readings, span: series.totalSpan }, period);
-  const decision = decideRhythm(analysis, rhythm, covered.samplesPerCycle);
+  const decision = decideRhythm(rhythm, covered.samplesPerCycle);
   const half = 1.645 * rhythm.driven.frequencySd;
   const amplitude = rhythm.amplitude;
   return {

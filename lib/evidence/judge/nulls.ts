@@ -33,13 +33,18 @@ export function bestNull(series: Series, floor: number): Null {
     return { kind, score, trendDegree: degree, residuals: fit.residuals };
   });
   const others = [approach(series, floor, cost), ...wandering(series, floor, cost, polynomials)];
-  return [...polynomials, ...others].reduce((a, b) => (b.score > a.score ? b : a));
+  const best = [...polynomials, ...others].reduce((a, b) => (b.score > a.score ? b : a));
+  const settling = others[0]!;
+  return best.kind === 'bend' && settling.score > best.score - 3 ? settling : best;
 }
 
 function approach(series: Series, floor: number, cost: (k: number) => number): Null {
   const n = series.t.length;
   const fitAt = (rate: number) =>
-    leastSquares([...trendColumns(series.t, 1), series.t.map((t) => Math.exp(-rate * t))], series.y);
+    leastSquares(
+      [...trendColumns(series.t, 1), series.t.map((t) => Math.exp(-rate * t))],
+      series.y,
+    );
   let best = fitAt(2);
   for (let k = 1; k <= 24; k++) {
     const fit = fitAt(1.5 * 1.22 ** k);

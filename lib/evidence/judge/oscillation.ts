@@ -160,7 +160,10 @@ function addHarmonics(
     const fit = fitOscillation(series, from, h, start.trendDegree, bounds);
     if (!fit) break;
     from = fit;
-    if (best === null || bic(fit.rss, n, 2 * h, floor) < bic(best.rss, n, 2 * best.harmonics, floor)) {
+    if (
+      best === null ||
+      bic(fit.rss, n, 2 * h, floor) < bic(best.rss, n, 2 * best.harmonics, floor)
+    ) {
       best = fit;
       misses = 0;
     } else {

@@ -50,7 +50,12 @@ export function prepare(request: JudgeRequest): Prepared {
   return {
     kind: 'series',
     remarks: condensed.remarks,
-    series: { ...series, noise: noise > 0 ? noise / series.scale : null, readings, totalSpan: span },
+    series: {
+      ...series,
+      noise: noise > 0 ? noise / series.scale : null,
+      readings,
+      totalSpan: span,
+    },
   };
 }
 

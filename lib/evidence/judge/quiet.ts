@@ -14,7 +14,7 @@ export function decideQuiet(
   a: Analysis,
   expected: JudgeRequest['expectedPeriod'],
 ): { verdict: Verdict; reasons: string[] } {
-  const reasons = [describe(series, a)];
+  const reasons = [scatterWords(series, a)];
   const lacking = whatLacks(series, expected);
   if (lacking !== null) return { verdict: 'undecided', reasons: [...reasons, ...lacking] };
   if (a.null.kind === 'bend' && !(expected && expected.high <= series.span / ENOUGH_CYCLES)) {
@@ -30,7 +30,7 @@ export function decideQuiet(
   return { verdict: 'steady', reasons };
 }
 
-function describe(series: Series, a: Analysis): string {
+function scatterWords(series: Series, a: Analysis): string {
   const drift = {
     flat: '',
     trend: ' beside a straight drift',
