@@ -50,6 +50,11 @@ export const noteCode = z.enum([
   'anchor-unreachable',
   'smallest-step',
   'range-misses-onset',
+  // cadence, replan
+  'no-period',
+  'interval-limited',
+  'record-capped',
+  'outside-envelope',
   // estimate
   'cannot-estimate',
   'perfect-separation',
