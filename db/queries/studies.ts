@@ -219,7 +219,10 @@ async function countEvidence(conn: Conn, { labId, studyIds }: Wanted, counts: Co
   const estimates = await conn
     .select({
       studyId: onsetEstimate.studyId,
-      onsets: sql<number>`JSON_LENGTH(${onsetEstimate.answer}, '$.onsets')`.mapWith(Number),
+      onsets:
+        sql<number>`COALESCE(JSON_LENGTH(JSON_EXTRACT(${onsetEstimate.answers}, '$[*].onsets[*]')), 0)`.mapWith(
+          Number,
+        ),
     })
     .from(onsetEstimate)
     .where(and(eq(onsetEstimate.labId, labId), inArray(onsetEstimate.studyId, studyIds)))

@@ -79,10 +79,14 @@ export async function observedOnsets(
   const found = new Map<string, EstimateAnswer['onsets']>();
   if (studyIds.length === 0) return found;
   const rows = await conn
-    .select({ studyId: onsetEstimate.studyId, answer: onsetEstimate.answer })
+    .select({ studyId: onsetEstimate.studyId, answers: onsetEstimate.answers })
     .from(onsetEstimate)
     .where(and(eq(onsetEstimate.labId, labId), inArray(onsetEstimate.studyId, studyIds)))
     .orderBy(onsetEstimate.createdAt, onsetEstimate.id);
-  for (const row of rows) found.set(row.studyId, row.answer.onsets);
+  for (const row of rows)
+    found.set(
+      row.studyId,
+      row.answers.flatMap((a) => a.onsets),
+    );
   return found;
 }

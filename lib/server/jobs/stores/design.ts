@@ -41,9 +41,9 @@ export const storeDesign: Store = async (tx, job, raw, now) => {
     createdBy: job.askedBy,
     createdAt: now,
   });
-  await tx.insert(level).values(
-    result.levels.map((l) => ({ id: uuid(), labId: job.labId, seriesVersionId, ...l })),
-  );
+  await tx
+    .insert(level)
+    .values(result.levels.map((l) => ({ id: uuid(), labId: job.labId, seriesVersionId, ...l })));
   await audit(tx, {
     labId: job.labId,
     actorId: job.askedBy,
