@@ -1,32 +1,17 @@
 'use client';
 
 import { useEffect, useState } from 'react';
+import { useNow } from '@/components/ui/use-now';
 import { clockText, offsetText, placeOf } from '@/lib/format';
 import { dayScale } from './day-scale';
 
 const HALF_MINUTE = 30_000;
 
-/**
- * The instant now, half-minute by half-minute. It starts from the server's clock and advances by
- * elapsed time, so that a tablet with a wrong clock still points at the lab's time.
- */
-function useNow(start: string): number {
-  const [now, setNow] = useState(() => Date.parse(start));
-  useEffect(() => {
-    const base = Date.parse(start);
-    const from = performance.now();
-    setNow(base);
-    const timer = setInterval(() => setNow(base + performance.now() - from), HALF_MINUTE);
-    return () => clearInterval(timer);
-  }, [start]);
-  return now;
-}
-
 type Props = { now: string; zone: string };
 
 /** Index pointer at now, on the scale of the day that the page was made on. */
 export function DayPointer({ now, zone }: Props) {
-  const instant = useNow(now);
+  const instant = useNow(now, HALF_MINUTE);
   const share = dayScale(now, zone).share(instant);
   return (
     <span
@@ -49,7 +34,7 @@ export function DayPointer({ now, zone }: Props) {
 
 /** Clock, place and offset; without a network, words say so. */
 export function DayClock({ now, zone }: Props) {
-  const instant = useNow(now);
+  const instant = useNow(now, HALF_MINUTE);
   const [offline, setOffline] = useState(false);
   useEffect(() => {
     const update = () => setOffline(!navigator.onLine);
