@@ -25,8 +25,14 @@ function evenly(first: number, side: AnchorSide, room: number, apart: number): n
 }
 
 /** Nearest free grid doses to the wished ones, each `apart` from the others and from the level. */
-function onGrid(wished: number[], side: AnchorSide, set: Settable, apart: number): number[] {
-  const taken = [side.next];
+function onGrid(
+  wished: number[],
+  side: AnchorSide,
+  set: Settable,
+  apart: number,
+  also: number[] = [],
+): number[] {
+  const taken = [side.next, ...also];
   const chosen: number[] = [];
   const [low, high] = [Math.min(side.end, side.next), Math.max(side.end, side.next)];
   const between = set.grid!.filter((d) => d >= low && d <= high);
@@ -66,6 +72,29 @@ export function anchorsOf(
   const nearest = doses[0];
   if (nearest !== undefined && Math.abs(nearest - side.end) > distinct(set)) {
     const text = `The first ${name} level stands at ${shown(nearest)}: the limits allow nothing nearer to the end of the range, ${shown(side.end)}.`;
+    notes.push({ code: 'anchor-unreachable', text });
+  }
+  return { placed: doses.map((dose) => ({ dose, purpose: side.purpose })), notes };
+}
+
+/** Anchors that two edges share: evenly spread between the last level of one and the first of the next. */
+export function anchorsBetween(
+  gap: readonly [number, number],
+  side: Pick<AnchorSide, 'count' | 'purpose'>,
+  set: Settable,
+  apart: number,
+): { placed: Placed[]; notes: Note[] } {
+  const [from, to] = gap;
+  const room = to - from;
+  const fit = apart > 0 ? Math.floor((room / apart) * (1 + 1e-9)) - 1 : side.count;
+  const n = room > distinct(set) ? Math.max(0, Math.min(side.count, fit)) : 0;
+  const wished = Array.from({ length: n }, (_, i) => from + (room * (i + 1)) / (n + 1));
+  const inner = { ...side, end: from, next: to };
+  const doses = set.grid ? onGrid(wished, inner, set, apart, [from]) : wished;
+  const notes: Note[] = [];
+  if (doses.length < side.count) {
+    const name = side.purpose === 'baseline' ? 'baseline' : 'far-side';
+    const text = `${doses.length} of ${side.count} ${name} levels fit between the edges, from ${shown(from)} to ${shown(to)}.`;
     notes.push({ code: 'anchor-unreachable', text });
   }
   return { placed: doses.map((dose) => ({ dose, purpose: side.purpose })), notes };
