@@ -32,7 +32,9 @@ export function growthRateAt(branch: Branch, control: number): number | null {
   const found: number[] = [];
   for (let i = 1; i < branch.control.length; i += 1) {
     const [a, b] = [branch.control[i - 1]!, branch.control[i]!];
-    if (a === b || control < Math.min(a, b) || control >= Math.max(a, b)) continue;
+    // A point shared by two pieces counts with the first of them.
+    if (a === b || (control === a && i > 1)) continue;
+    if (control < Math.min(a, b) || control > Math.max(a, b)) continue;
     const share = (control - a) / (b - a);
     const [ra, rb] = [branch.growthRate[i - 1]!, branch.growthRate[i]!];
     found.push(ra + share * (rb - ra));
