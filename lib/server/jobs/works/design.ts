@@ -14,10 +14,20 @@ export type DesignResult = {
 export const workDesign: Work = (input, progress) => {
   const plan = input as DesignPlan;
   progress(0, plan.requests.length, 'choosing levels');
-  const merged = designEdges(plan.requests);
+  const first = plan.requests[0];
+  if (!first) throw new Error('a design needs at least one edge');
+  const { range, order, limits, anchors, seed } = first;
+  const merged = designEdges(plan.requests, { range, order, limits, anchors, seed });
   const result: DesignResult = {
-    levels: merged.levels.map((row) => timeLevel(plan, row)),
-    designs: plan.requests.map((request, i) => ({ request, answer: merged.edges[i]! })),
+    levels: merged.levels.map(({ edge: _, ...row }) => timeLevel(plan, row)),
+    designs: plan.requests.map((request, i) => ({
+      request,
+      answer: {
+        levels: merged.levels.flatMap(({ edge, ...row }) => (edge === i ? [row] : [])),
+        expected: merged.expected[i]!,
+        notes: merged.notes,
+      },
+    })),
     notes: merged.notes.map((n) => n.text),
   };
   return result;
