@@ -7,8 +7,8 @@ import type { OnsetTask } from './onset-levels';
 import { onsetLevels, onsetTask, varianceOf } from './onset-levels';
 import { priorOf } from './prior';
 import { rowsOf } from './rows';
-import type { Settable } from './settable';
-import { settableSets, startOf } from './settable';
+import type { Avoid, Settable } from './settable';
+import { clearOf, settableSets, startOf } from './settable';
 
 /** 5 % point of the standard normal: half-width of a central 90 % interval in sd. */
 const Z90 = 1.645;
@@ -95,11 +95,16 @@ function anchorsFor(request: DesignRequest, set: Settable, doses: readonly numbe
  * Throws `EngineError` for a largest step in random order or one that needs thousands of rungs.
  */
 export function design(request: DesignRequest): DesignAnswer {
+  return designAvoiding(request, { doses: [], near: 0 });
+}
+
+/** `design` with doses that no onset level or anchor may repeat (rungs may pass them). */
+export function designAvoiding(request: DesignRequest, avoid: Avoid): DesignAnswer {
   refuseStepInRandomOrder(request);
   const prior = priorOf(request);
   const task = onsetTask(prior, request);
   const equal = equalSpacing(request.range, request.levels);
-  const sets = settableSets(request);
+  const sets = settableSets(request).flatMap((set) => clearOf(set, avoid) ?? []);
   const best = bestSet(task, sets, equal);
   const notes: Note[] = [];
   if (best === null || best.doses.length === 0) {

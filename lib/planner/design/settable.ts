@@ -70,3 +70,26 @@ export function settableSets(request: SettableRequest): Settable[] {
     return [{ low: grid[0]!, high: grid.at(-1)!, grid, path: island }];
   });
 }
+
+/** Doses that no onset level or anchor may repeat, and how near to one counts as repeating it. */
+export type Avoid = { doses: readonly number[]; near: number };
+
+const LATTICE = 800;
+
+/**
+ * The set without the doses to avoid; rungs may still pass them. Where any dose may be set, a fine
+ * lattice stands for the set, with places just clear of each avoided dose. Null: nothing is left.
+ */
+export function clearOf(set: Settable, avoid: Avoid): Settable | null {
+  if (avoid.doses.length === 0) return set;
+  const { low, high } = set;
+  const even = Array.from({ length: LATTICE + 1 }, (_, i) => low + ((high - low) * i) / LATTICE);
+  const beside = avoid.doses.flatMap((d) => [d - avoid.near, d + avoid.near]);
+  const all = set.grid ?? [...even, ...beside, high].sort((a, b) => a - b);
+  const grid = [...new Set(all)].filter(
+    (d) =>
+      d >= low && d <= high && avoid.doses.every((a) => Math.abs(d - a) >= avoid.near * (1 - 1e-9)),
+  );
+  if (grid.length === 0) return null;
+  return { ...set, grid, low: grid[0]!, high: grid.at(-1)! };
+}
