@@ -1,7 +1,8 @@
+import type { z } from 'zod';
 import { type LayOutRequest, layOutRequest } from '@/lib/contracts/lay-out';
 import { type Random, seededRandom } from '@/lib/planner/lay-out/random';
 
-type Input = Parameters<typeof layOutRequest.parse>[0];
+type Input = z.input<typeof layOutRequest>;
 export const request = (input: Input): LayOutRequest => layOutRequest.parse(input);
 
 /** A weekday of eight hours, the plainest working hours. */
