@@ -13,6 +13,7 @@ import { checkDelays } from './equations/check-delays';
 import { compileModel } from './equations/compile';
 import type { CompiledSystem } from './equations/types';
 import { type Analysis, analyse, analysisNotes, type Range } from './onset/analyse';
+import { coexistenceWindow } from './onset/coexistence';
 import { inspectCrossing } from './onset/locate';
 import { criticalityAt } from './onset/lyapunov';
 import type { Onset } from './onset/scan';
@@ -37,12 +38,12 @@ export function predict(request: PredictRequest, hooks: PredictHooks = {}): Pred
   hooks.progress?.(0, request.draws, 'following the steady state');
   const analysis = analyse(system, system.values, range, system.start, hooks.cancelled);
   const notes: Note[] = analysisNotes(analysis);
-  const plain = analysis.scan.onsets.map((o) => describeOnset(analysis, o, request));
+  const branch = branchAnswer(analysis);
+  const plain = analysis.scan.onsets.map((o) => describeOnset(analysis, branch, o, request));
   const spreads =
     request.draws > 0 ? propagate(system, request, range, analysis, hooks) : plain.map(() => null);
   const onsets = plain.map((o, k) => ({ ...o, spread: spreads[k] ?? null }));
   notes.push(...spreadNotes(onsets));
-  const branch = branchAnswer(analysis);
   const cycles = request.cycles ? cyclesOf(system, range, branch, onsets, notes, hooks) : [];
   hooks.progress?.(request.draws, request.draws, 'done');
   return { onsets, branch, cycles, notes };
@@ -88,7 +89,12 @@ function rangeOf(system: CompiledSystem, request: PredictRequest): Range {
   return { controlIndex, from, to };
 }
 
-function describeOnset(analysis: Analysis, onset: Onset, request: PredictRequest): PredictedOnset {
+function describeOnset(
+  analysis: Analysis,
+  branch: Branch,
+  onset: Onset,
+  request: PredictRequest,
+): PredictedOnset {
   const { context } = analysis;
   const { variables } = context.problem.system;
   inspectCrossing(context, onset);
@@ -103,7 +109,10 @@ function describeOnset(analysis: Analysis, onset: Onset, request: PredictRequest
     lyapunov: kind.lyapunov,
     oscillates: onset.growthSlope > 0 ? 'above' : 'below',
     growthSlope: onset.growthSlope,
-    coexistence: null,
+    coexistence:
+      kind.criticality === 'subcritical'
+        ? coexistenceWindow(context.problem.system, analysis, branch, onset)
+        : null,
     steadyState: Object.fromEntries(variables.map((v, i) => [v, onset.x[i]!])),
     dose: controlToDose(request.control.doseMap, onset.control),
     spread: null,

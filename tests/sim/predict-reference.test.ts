@@ -7,16 +7,9 @@ import cases from '../reference/check-values.json';
  * Fifty reference systems, each with its source (field `source`) and worked out by routes that share no
  * code with this project. `unknown` criticality: the Lyapunov coefficient is exactly zero.
  */
-const NOT_COVERED = {
-  /** Numbers of the cases whose coexistence window is not compared yet. */
-  coexistence: cases.flatMap((c, i) =>
-    c.expect.onsets.some((o) => o.bistable_window !== null) ? [i + 1] : [],
-  ),
-};
-
 describe('reference systems', () => {
   cases.forEach((c, i) => {
-    it(`${i + 1}. ${c.title}: onsets, periods, sides and criticality`, () => {
+    it(`${i + 1}. ${c.title}: onsets, periods, sides, criticality, coexistence`, () => {
       const request = predictRequest.parse({ ...c.request, cycles: false });
       const { onsets, branch } = predict(request);
       expect(onsets.map((o) => o.value)).toHaveLength(c.expect.onsets.length);
@@ -29,6 +22,14 @@ describe('reference systems', () => {
         expect(got.criticality).toBe(
           want.criticality === 'unknown' ? 'degenerate' : want.criticality,
         );
+        const window = want.bistable_window;
+        if (window) {
+          const [from, to] = window as [number, number];
+          const near = (end: number) => 0.02 * (to - from) + 0.003 * Math.abs(end);
+          expect(got.coexistence).not.toBeNull();
+          expect(Math.abs(got.coexistence!.from - from)).toBeLessThan(near(from));
+          expect(Math.abs(got.coexistence!.to - to)).toBeLessThan(near(to));
+        } else if (got.criticality !== 'subcritical') expect(got.coexistence).toBeNull();
         expect(Math.sign(got.growthSlope)).toBe(got.oscillates === 'above' ? 1 : -1);
       });
       expect(branch.control[0]).toBe(request.control.from);
@@ -36,8 +37,7 @@ describe('reference systems', () => {
     });
   });
 
-  it('says which parts of the reference are not covered yet', () => {
-    console.info(`coexistence windows not covered: cases ${NOT_COVERED.coexistence.join(', ')}`);
+  it('covers all fifty', () => {
     expect(cases).toHaveLength(50);
   });
 });
