@@ -21,6 +21,16 @@ export class History {
     this.last = startTime;
   }
 
+  /** A record of its own with the same content. */
+  copy(): History {
+    const other = new History(this.n, this.before, this.last);
+    other.begin = this.begin.slice(this.first, this.count);
+    other.length = this.length.slice(this.first, this.count);
+    other.pieces = this.pieces.slice(this.first * 5 * this.n, this.count * 5 * this.n);
+    other.count = this.count - this.first;
+    return other;
+  }
+
   /** Time where the record ends. */
   get end(): number {
     return this.last;
@@ -40,7 +50,7 @@ export class History {
   private makeRoom(): void {
     const used = this.count - this.first;
     const width = 5 * this.n;
-    const size = used > this.begin.length / 2 ? 2 * this.begin.length : this.begin.length;
+    const size = used > this.begin.length / 2 ? 2 * used + 64 : this.begin.length;
     const move = (list: Float64Array, each: number) => {
       const moved = size === this.begin.length ? list : new Float64Array(size * each);
       moved.set(list.subarray(this.first * each, this.count * each));
