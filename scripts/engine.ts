@@ -1,5 +1,6 @@
 import type { z } from 'zod';
 import {
+  boundaryRequest,
   designRequest,
   EngineError,
   judgeRequest,
@@ -31,6 +32,10 @@ function verb<S extends z.ZodType>(
 
 const VERBS: Readonly<Record<string, Verb>> = {
   predict: verb(predictRequest, async () => (await import('@/lib/sim/predict')).predict),
+  boundary: verb(
+    boundaryRequest,
+    async () => (await import('@/lib/sim/boundary/boundary')).boundary,
+  ),
   simulate: verb(
     simulateRequest,
     async () => (await import('@/lib/sim/integrate/simulate')).simulate,

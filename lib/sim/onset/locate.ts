@@ -55,11 +55,18 @@ export function locateCrossing(context: BranchContext, guess: Crossing): Crossin
   return null;
 }
 
-/** Jacobian of (f, Re g, Im g) by (x, ω, c), columns in scaled variables. */
-function onsetJacobian(context: BranchContext, scale: Float64Array, omega: number): Float64Array {
+/**
+ * Jacobian of (f, Re g, Im g) by (x, ω, c), columns in scaled variables, in the leading part of an m × m
+ * matrix (m = n + 2, or more where a caller adds rows and columns). The workspace must hold the mode.
+ */
+export function onsetJacobian(
+  context: BranchContext,
+  scale: Float64Array,
+  omega: number,
+  m = context.problem.n + 2,
+): Float64Array {
   const { problem, work, change, width } = context;
   const n = problem.n;
-  const m = n + 2;
   const a = new Float64Array(m * m);
   const unit = new Float64Array(n);
   for (let i = 0; i < n; i++) {
