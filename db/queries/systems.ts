@@ -1,4 +1,4 @@
-import { and, desc, eq } from 'drizzle-orm';
+import { and, desc, eq, inArray, max } from 'drizzle-orm';
 import type { Conn } from '../client';
 import { systemVersion, user } from '../schema';
 
@@ -62,4 +62,52 @@ export async function insertSystemVersion(
   row: typeof systemVersion.$inferInsert,
 ): Promise<void> {
   await tx.insert(systemVersion).values(row);
+}
+
+/** The newest system of a study in outline. */
+export type SystemOutline = {
+  studyId: string;
+  number: number;
+  name: string;
+  controlSymbol: string;
+  controlUnit: string | null;
+  from: number;
+  to: number;
+};
+
+/** The newest system of each study, in outline, by study id. */
+export async function newestSystems(
+  conn: Conn,
+  { labId, studyIds }: { labId: string; studyIds: string[] },
+): Promise<Map<string, SystemOutline>> {
+  const outlines = new Map<string, SystemOutline>();
+  if (studyIds.length === 0) return outlines;
+  const newest = conn
+    .select({ studyId: systemVersion.studyId, number: max(systemVersion.number).as('newest') })
+    .from(systemVersion)
+    .where(and(eq(systemVersion.labId, labId), inArray(systemVersion.studyId, studyIds)))
+    .groupBy(systemVersion.studyId)
+    .as('newest_system');
+  const rows = await conn
+    .select({ version: systemVersion })
+    .from(systemVersion)
+    .innerJoin(
+      newest,
+      and(eq(newest.studyId, systemVersion.studyId), eq(newest.number, systemVersion.number)),
+    )
+    .where(eq(systemVersion.labId, labId));
+  for (const { version } of rows) {
+    const { studyId, number, model, control } = version;
+    const parameter = model.parameters.find((p) => p.symbol === control.symbol);
+    outlines.set(studyId, {
+      studyId,
+      number,
+      name: model.name,
+      controlSymbol: control.symbol,
+      controlUnit: parameter?.unit ?? null,
+      from: control.from,
+      to: control.to,
+    });
+  }
+  return outlines;
 }

@@ -1,5 +1,5 @@
 import type { Metadata } from 'next';
-import { PageHead } from '@/components/frame';
+import { PageBody, PageHead } from '@/components/frame';
 import { EmptyState, KeyLink } from '@/components/ui';
 import { predictionOutlines } from '@/db/queries/predictions';
 import { progressOfStudies, studiesOfLab } from '@/db/queries/studies';
@@ -39,7 +39,7 @@ export default async function StudiesPage() {
     }),
   );
   return (
-    <>
+    <PageBody>
       <div className="mb-6">
         <PageHead title="Studies" actions={writes && rows.length > 0 ? newKey : undefined} />
       </div>
@@ -52,6 +52,6 @@ export default async function StudiesPage() {
           {writes ? null : ' The head or an investigator can start one.'}
         </EmptyState>
       )}
-    </>
+    </PageBody>
   );
 }

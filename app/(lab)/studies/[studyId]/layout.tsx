@@ -2,6 +2,7 @@ import type { Metadata } from 'next';
 import { notFound } from 'next/navigation';
 import type { ReactNode } from 'react';
 import { cache } from 'react';
+import { PageBody } from '@/components/frame';
 import { studyById, studyProgress } from '@/db/queries/studies';
 import { database } from '@/lib/server/database';
 import { pageMember } from '@/lib/server/member';
@@ -28,7 +29,7 @@ export default async function StudyLayout({ params, children }: Props & { childr
   const stations = (await studyProgress(database(), { labId, studyId })) ?? [];
   const remarks = [study.summary, study.simulated ? 'simulated readings' : ''].filter(Boolean);
   return (
-    <>
+    <PageBody>
       <StudyFrame
         studyId={studyId}
         title={study.title}
@@ -42,6 +43,6 @@ export default async function StudyLayout({ params, children }: Props & { childr
         }))}
       />
       {children}
-    </>
+    </PageBody>
   );
 }

@@ -1,9 +1,10 @@
 import type { Metadata } from 'next';
-import { PageHead } from '@/components/frame';
+import { PageBody, PageHead } from '@/components/frame';
 import { Caution, ForbiddenState, KeyLink } from '@/components/ui';
 import { studiesOfLab, usableRigs } from '@/db/queries/studies';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
+import { citationOf } from '@/lib/server/systems/published-source';
 import { library } from '@/lib/sim/library';
 import { NewStudyForm } from './_components/new-study-form';
 
@@ -13,16 +14,18 @@ export const metadata: Metadata = { title: 'New study' };
 export default async function NewStudyPage({
   searchParams,
 }: {
-  searchParams: Promise<{ model?: string }>;
+  searchParams: Promise<{ model?: string; study?: string }>;
 }) {
   const member = await pageMember();
   if (!may(member, 'write system')) {
     return (
-      <ForbiddenState
-        title="You cannot start a study"
-        who="The head or an investigator can."
-        action={<KeyLink href="/studies">Back to the studies</KeyLink>}
-      />
+      <PageBody>
+        <ForbiddenState
+          title="You cannot start a study"
+          who="The head or an investigator can."
+          action={<KeyLink href="/studies">Back to the studies</KeyLink>}
+        />
+      </PageBody>
     );
   }
   const { labId } = member;
@@ -31,16 +34,16 @@ export default async function NewStudyPage({
     studiesOfLab(db, { labId }),
     usableRigs(db, { labId }),
   ]);
-  const { model: wanted } = await searchParams;
+  const wanted = await searchParams;
   return (
-    <>
+    <PageBody>
       <PageHead title="New study" />
       <NewStudyForm
         models={library.map((m) => ({
           id: m.id,
           title: m.title,
           summary: m.summary,
-          source: sourceLine(m.source),
+          source: citationOf(m.source),
           perturbs: m.perturbs,
           doseLabel: m.doseLabel,
           doseUnit: m.doseUnit,
@@ -53,11 +56,14 @@ export default async function NewStudyPage({
           doseUnit,
         }))}
         rigs={rigs}
-        wanted={library.find((m) => m.id === wanted)?.id ?? null}
+        wanted={{
+          model: library.find((m) => m.id === wanted.model)?.id ?? null,
+          study: studies.find((s) => s.id === wanted.study)?.id ?? null,
+        }}
       />
       <div className="mt-6">
         <Caution />
       </div>
-    </>
+    </PageBody>
   );
 }

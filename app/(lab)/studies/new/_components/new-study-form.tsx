@@ -31,7 +31,7 @@ type Props = {
   models: Start[];
   studies: Start[];
   rigs: { id: string; name: string; place: string }[];
-  wanted: string | null;
+  wanted: { model: string | null; study: string | null };
 };
 
 const blank: StudyDraft = {
@@ -54,16 +54,20 @@ const startOf = ({ models, studies }: Props, origin: Origin) =>
 const suggested = (start: Start | undefined): Partial<StudyDraft> =>
   start ? { perturbs: start.perturbs, doseLabel: start.doseLabel, doseUnit: start.doseUnit } : {};
 
+function firstOrigin({ wanted, models }: Props): Origin {
+  if (wanted.study) return { kind: 'study', id: wanted.study };
+  return { kind: 'library', id: wanted.model ?? models[0]?.id ?? '' };
+}
+
 /** One press makes the study and version 1 of its system; what was typed stays until it is saved. */
 export function NewStudyForm(props: Props) {
   const router = useRouter();
   const form = useRef<HTMLFormElement>(null);
   const [id] = useState(() => uuid());
-  const first = props.wanted ?? props.models[0]?.id ?? '';
-  const [origin, setOrigin] = useState<Origin>({ kind: 'library', id: first });
+  const [origin, setOrigin] = useState<Origin>(() => firstOrigin(props));
   const [draft, setDraft] = useState<StudyDraft>(() => ({
     ...blank,
-    ...suggested(startOf(props, { kind: 'library', id: first })),
+    ...suggested(startOf(props, firstOrigin(props))),
   }));
   const [found, setFound] = useState<Record<string, string>>({});
   const { run, pending, problem } = useAction(createStudy, {

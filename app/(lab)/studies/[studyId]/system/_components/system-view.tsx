@@ -1,3 +1,4 @@
+import { Equations } from '@/components/system/equations';
 import { type Column, DataTable, Plate } from '@/components/ui';
 import type { Control, DoseMap, MapNumber, Spread, SystemModel } from '@/lib/contracts';
 import { figure, unitText, withUnit } from '@/lib/format';
@@ -29,17 +30,6 @@ export function doseMapText(map: DoseMap | undefined): string {
     'hill-activation': 'Hill, activating',
   };
   return `${name[kind]}: ${named.join(', ')}`;
-}
-
-/** Equations as they are worked with, one a line; long ones are wrapped. */
-export function Equations({ model }: { model: SystemModel }) {
-  return (
-    <pre className="font-mono text-body whitespace-pre-wrap [overflow-wrap:anywhere]">
-      {model.variables
-        .map((v) => `d${v.symbol}/dt = ${model.equations[v.symbol] ?? ''}`)
-        .join('\n')}
-    </pre>
-  );
 }
 
 type Parameter = SystemModel['parameters'][number];
