@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { levelCadence } from '@/lib/planner/cadence/level-cadence';
 import { outlookAt } from '@/lib/planner/cadence/outlook';
 import { type CadenceInput, planCadence } from '@/lib/planner/cadence/plan-cadence';
 import {
@@ -84,8 +85,17 @@ describe('cadence of a level', () => {
     expect(hard.notes[0]!.text).toContain('88.2 min');
     const still = planCadence({ ...yeast, growthRate: 0, settleCap: 60, recordCap: 30 });
     expect(still.settleMinutes).toBe(60);
-    expect(still.recordMinutes).toBeGreaterThanOrEqual(30);
+    expect(still.recordMinutes).toBeLessThanOrEqual(30);
+    expect(still.recordMinutes).toBeGreaterThan(29.9);
     expect(still.notes.map((n) => n.code)).toEqual(['slow-settling', 'record-capped']);
+  });
+
+  it('never exceeds a cap by rounding', () => {
+    for (const cap of [33.37, 100.3, 777.7]) {
+      const found = planCadence({ ...yeast, growthRate: 1e-9, settleCap: cap, recordCap: cap });
+      expect(found.settleMinutes).toBe(cap);
+      expect(found.recordMinutes).toBeLessThanOrEqual(cap);
+    }
   });
 
   it('reads at least 12 times in the shortest period, on round intervals', () => {
@@ -169,5 +179,19 @@ describe('outlook at a level', () => {
     const onsets = [{ value: 2, period: 0.5 }] as Onsets;
     expect(outlookAt({ ...answer, onsets }, 0.5, 'min', 0).period!.value).toBe(0.5);
     expect(outlookAt(answer, 9, 'min').growthRate).toBeNull();
+  });
+
+  it('joins outlook, readout noise and cadence for one level', () => {
+    const ask = { answer, timeUnit: 'h', control: 2.05 };
+    const clean = levelCadence({ ...ask, readouts: [{ symbol: 'x', noiseSd: 0.02 }] });
+    const noisy = levelCadence({ ...ask, readouts: [{ symbol: 'x', noiseSd: 2 }] });
+    expect(clean.cycles).toBeGreaterThanOrEqual(6);
+    expect(noisy.recordMinutes).toBeGreaterThan(clean.recordMinutes);
+    // The cycle's amplitude is 2, so noise of 0.4 is the default share of 0.2.
+    const usual = levelCadence({ ...ask, readouts: [{ symbol: 'x', noiseSd: 0.4 }] });
+    expect(usual).toEqual(levelCadence({ ...ask, readouts: [{ symbol: 'x' }] }));
+    const capped = levelCadence({ ...ask, readouts: [], settleCap: 10, recordCap: 60 });
+    expect(capped.settleMinutes).toBe(10);
+    expect(capped.recordMinutes).toBeLessThanOrEqual(60);
   });
 });

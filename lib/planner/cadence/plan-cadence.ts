@@ -142,11 +142,14 @@ export function planCadence(input: CadenceInput): LevelCadence {
     const text = `No rhythm is predicted here: the record is laid out for a period of ${shown(tau)}.`;
     notes.push({ code: 'no-period', text });
   }
-  const settleMinutes = roundUp(settling(input, period.value, notes));
+  const settle = settling(input, period.value, notes);
+  const settleMinutes = Math.min(roundUp(settle), input.settleCap ?? Number.POSITIVE_INFINITY);
   const intervalMinutes = interval(input, period.low, notes);
   const length = recording(input, period.high, intervalMinutes, notes);
-  const steps = Math.max(1, Math.ceil((length / intervalMinutes) * (1 - 1e-9)));
-  const recordMinutes = steps * intervalMinutes;
+  const most = Math.floor(((input.recordCap ?? Infinity) / intervalMinutes) * (1 + 1e-9));
+  const steps = Math.max(1, Math.min(most, Math.ceil((length / intervalMinutes) * (1 - 1e-9))));
+  const whole = Math.max(input.recordCap ?? Infinity, intervalMinutes);
+  const recordMinutes = Math.min(steps * intervalMinutes, whole);
   return {
     settleMinutes,
     recordMinutes,

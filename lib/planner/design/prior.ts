@@ -145,8 +145,8 @@ function atomPrior(atoms: Atoms): Prior {
   return { ...momentsOf(atoms), normal: false, atoms };
 }
 
-/** A stated normal counts as positive when zero lies at least 4 sd below its mean (3e-5). */
-const POSITIVE_SDS = 4;
+/** A stated normal counts as positive when less than 1 % of it lies at or below zero. */
+const POSITIVE_SDS = 2.3263;
 
 /**
  * The onset as believed before the series: the draws or the normal, with model doubt put on it.
