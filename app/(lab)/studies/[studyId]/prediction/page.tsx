@@ -1,13 +1,13 @@
 import type { Metadata } from 'next';
 import { notFound } from 'next/navigation';
 import { EmptyState, FailedState, KeyLink } from '@/components/ui';
-import { latestPrediction, latestPredictJob } from '@/db/queries/predictions';
+import { latestPredictJob } from '@/db/queries/predictions';
 import { studyById } from '@/db/queries/studies';
-import { levelMarks, observedOnsets } from '@/db/queries/study-ribbons';
 import { latestSystem } from '@/db/queries/systems';
 import { stampText } from '@/lib/format';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
+import { studyRibbon } from '@/lib/server/predictions/study-ribbon';
 import { PredictPanel } from './_components/predict-panel';
 import { PredictionView } from './_components/prediction-view';
 
@@ -25,14 +25,15 @@ export default async function PredictionPage({ params }: { params: Promise<{ stu
   const of = { labId, studyId };
   const study = await studyById(db, of);
   if (!study) notFound();
-  const [system, prediction, job] = await Promise.all([
+  const [system, shown, job] = await Promise.all([
     latestSystem(db, of),
-    latestPrediction(db, of),
+    studyRibbon(db, { ...of, ceilingDose: study.ceilingDose }),
     latestPredictJob(db, of),
   ]);
   if (!system) notFound();
   const predicts = may(member, 'predict');
-  const stale = prediction !== null && prediction.systemNumber !== system.number;
+  const prediction = shown?.prediction ?? null;
+  const stale = shown?.stale === true;
   const active = job?.state === 'queued' || job?.state === 'running' ? job : null;
   const failed = job?.state === 'failed' ? job : null;
   const panel = {
@@ -44,27 +45,24 @@ export default async function PredictionPage({ params }: { params: Promise<{ stu
     keyKind: prediction === null || stale ? ('filled' as const) : ('outlined' as const),
     keyName: prediction === null ? 'Predict' : 'Predict again',
   };
-  const wanted = { labId, studyIds: [studyId] };
   return (
     <>
       {failed ? <Failed error={failed.error} studyId={studyId} kept={prediction !== null} /> : null}
-      {prediction === null ? (
+      {shown === null ? (
         <NoPrediction predicts={predicts} working={active !== null} panel={panel} />
       ) : (
         <>
           {stale ? (
             <p className="mb-4 border-l-[3px] border-ink bg-plate px-4 py-2">
-              From System v{prediction.systemNumber}; the newest is v{system.number}. Nothing below
-              holds for v{system.number} until it is predicted again.
+              From System v{shown.prediction.systemNumber}; the newest is v{system.number}. Nothing
+              below holds for v{system.number} until it is predicted again.
             </p>
           ) : null}
           <PredictionView
             study={study}
-            prediction={prediction}
-            newestSystem={system.number}
-            levels={await levelMarks(db, wanted)}
-            observed={(await observedOnsets(db, wanted)).get(studyId) ?? []}
-            at={stampText(prediction.createdAt, member.lab.timeZone)}
+            prediction={shown.prediction}
+            ribbon={shown.ribbon}
+            at={stampText(shown.prediction.createdAt, member.lab.timeZone)}
             actions={predicts ? <PredictPanel {...panel} /> : null}
           />
         </>

@@ -2,9 +2,7 @@ import { GrowthChart, JoinedPlate } from '@/components/charts';
 import { Caution, Finding, FindingAndTable, Plate } from '@/components/ui';
 import type { PredictionRow } from '@/db/queries/predictions';
 import type { StudyRow } from '@/db/queries/studies';
-import type { LevelMark } from '@/db/queries/study-ribbons';
-import type { EstimateAnswer } from '@/lib/contracts';
-import { answerRibbon, firstReadout } from '@/lib/server/predictions/ribbon';
+import { type answerRibbon, firstReadout } from '@/lib/server/predictions/ribbon';
 import { settlingNear } from '@/lib/server/predictions/settling';
 import { criticalityWords, noOnsetWords, predictionSentence } from '@/lib/server/predictions/words';
 import { controlToDose } from '@/lib/sim/dose-map';
@@ -15,23 +13,16 @@ import { WaitingTable } from './waiting-table';
 type ViewProps = {
   study: StudyRow;
   prediction: PredictionRow;
-  newestSystem: number;
-  levels: LevelMark[];
-  observed: EstimateAnswer['onsets'];
+  ribbon: ReturnType<typeof answerRibbon>;
   at: string;
   actions: React.ReactNode;
 };
 
 /** Where, how fast, gentle or abrupt, how long to wait. */
 export function PredictionView(props: ViewProps) {
-  const { study, prediction, newestSystem, levels, observed, at, actions } = props;
+  const { study, prediction, ribbon, at, actions } = props;
   const { answer, request } = prediction;
   const { model, control } = request;
-  const ribbon = answerRibbon(
-    { answer, model, control, systemNumber: prediction.systemNumber },
-    { ceilingDose: study.ceilingDose, systemNumber: newestSystem },
-    { levels, observed },
-  );
   const units = {
     control: ribbon.unit,
     time: model.timeUnit,
