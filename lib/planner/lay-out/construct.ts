@@ -1,4 +1,5 @@
 import { insertAll } from './insert';
+import { earliestPlace } from './place';
 import type { Job, Problem } from './problem';
 import type { Cost, Placed, State } from './state';
 import { compareCost } from './state';
@@ -42,15 +43,38 @@ export function greedyOrders(problem: Problem): number[][] {
   ];
 }
 
+/** Further greedy orders are tried only while the work so far is below this. */
+const ENOUGH_WORK = 1_500_000;
+
+/** Marks the bookings that an empty calendar has no place for; alike ones are tried once. */
+export function markHopeless(state: State): void {
+  const { jobs, order, notBefore, notAfter } = state.problem;
+  const known = new Map<string, boolean>();
+  for (const i of order) {
+    const job = jobs[i]!;
+    const shape = JSON.stringify([job.duration, job.visits, job.rigs, job.able]);
+    let fits = known.get(shape);
+    if (fits === undefined) {
+      const alone = { ...job, group: [i], followers: [], after: [] };
+      const bounds = { from: notBefore, to: notAfter - job.duration };
+      fits = earliestPlace(state, alone, bounds) !== null;
+      known.set(shape, fits);
+    }
+    if (!fits || job.after.some((a) => state.hopeless.has(a.job))) state.hopeless.add(i);
+  }
+}
+
 /** The best of the greedy plans; the state is left holding it. */
 export function construct(state: State): Plan {
   let best: Plan | null = null;
+  markHopeless(state);
   const empty = state.mark();
   for (const order of greedyOrders(state.problem)) {
     insertAll(state, order);
     const plan = snapshot(state);
     if (!best || compareCost(plan.cost, best.cost) < 0) best = plan;
     state.rollback(empty);
+    if (state.work > ENOUGH_WORK) break;
   }
   const plan = best ?? snapshot(state);
   state.restore(plan.placed);

@@ -24,13 +24,14 @@ function distance(state: State, a: number, b: number, random: Random): number {
 
 /** Bookings to take out in one step: one at random, or an unplaced one, and its competitors. */
 function chooseVictims(state: State, random: Random): number[] {
-  const { jobs } = state.problem;
+  const { hopeless } = state;
+  const jobs = state.problem.jobs.filter((j) => !hopeless.has(j.index));
   const n = jobs.length;
   const unplaced = jobs.map((j) => j.index).filter((i) => !state.placed[i]);
   const seed =
     unplaced.length > 0 && random() < 0.5
       ? unplaced[Math.floor(random() * unplaced.length)]!
-      : Math.floor(random() * n);
+      : jobs[Math.floor(random() * n)]!.index;
   const most = Math.min(n, Math.max(LARGEST / 2, Math.min(LARGEST, Math.ceil(n / 5))));
   const size = 1 + Math.floor(random() * most);
   const near = jobs
@@ -42,7 +43,7 @@ function chooseVictims(state: State, random: Random): number[] {
     .slice(0, size)
     .map((x) => x.i);
   // A group can change its rig only when all of it is lifted.
-  if (random() < 0.3) near.push(...jobs[seed]!.group);
+  if (random() < 0.3) near.push(...state.problem.jobs[seed]!.group);
   return near;
 }
 
@@ -76,6 +77,24 @@ function chooseDelays(state: State, order: readonly number[], random: Random) {
   return delays;
 }
 
+/** Sets bookings again while their followers stand; followers are lifted only where that fails. */
+function reseatInPlace(
+  state: State,
+  victims: readonly number[],
+  taste: Taste,
+  random: Random,
+): void {
+  const { jobs } = state.problem;
+  for (const i of victims) state.set(i, null);
+  insertAll(state, chooseOrder(state, [...new Set(victims)], random), taste);
+  const orphans = victims.filter(
+    (i) => !state.placed[i] && jobs[i]!.followers.some((f) => state.placed[f]),
+  );
+  if (orphans.length === 0) return;
+  const lifted = new Set([...lift(state, orphans), ...victims.filter((i) => !state.placed[i])]);
+  insertAll(state, chooseOrder(state, [...lifted], random), taste);
+}
+
 function acceptable(next: Cost, current: Cost, slack: number): boolean {
   if (compareCost(next, current) <= 0) return true;
   return next[0] === current[0] && next[1] <= current[1] * (1 + slack) + 1e-9;
@@ -91,14 +110,14 @@ export function improve(state: State, start: Plan, effort: number, random: Rando
   let best = start;
   let current = start.cost;
   const budget = state.work + effort * WORK_PER_STEP;
-  if (state.problem.jobs.length === 0) return best;
+  if (state.hopeless.size === state.problem.jobs.length) return best;
   for (let step = 0; step < effort && state.work < budget; step++) {
     const mark = state.mark();
     const victims = chooseVictims(state, random);
     const delays = chooseDelays(state, victims, random);
-    const lifted = lift(state, victims);
-    const order = chooseOrder(state, lifted, random);
-    insertAll(state, order, chooseTaste(state, random), delays);
+    const taste = chooseTaste(state, random);
+    if (random() < 0.6) reseatInPlace(state, victims, taste, random);
+    else insertAll(state, chooseOrder(state, lift(state, victims), random), taste, delays);
     const cost = state.cost();
     if (!acceptable(cost, current, 0.01 * (1 - step / effort))) {
       state.rollback(mark);

@@ -4,8 +4,10 @@ import { LEAST_LOADED, type Taste } from './staff';
 import type { State } from './state';
 import { GRID } from './time';
 
-const MAX_PUSHES = 60;
 const MAX_DEPTH = 8;
+/** Pushes that one insertion may make in all, those of predecessors' predecessors included. */
+const MAX_PUSHES = 120;
+type Patience = { pushes: number };
 
 /** A booking and all that follow it, directly or through others. */
 export function withFollowers(state: State, indices: readonly number[]): Set<number> {
@@ -47,21 +49,19 @@ export function insert(
   from = Number.NEGATIVE_INFINITY,
   taste: Taste = LEAST_LOADED,
   depth = 0,
+  patience: Patience = { pushes: MAX_PUSHES },
 ): boolean {
+  if (state.hopeless.has(job.index)) return false;
   const bounds = startBounds(state, job);
   if (!bounds) return false;
-  const place = earliestPlace(
-    state,
-    job,
-    { from: Math.max(bounds.from, from), to: bounds.to },
-    taste,
-  );
+  const place = earliestPlace(state, job, { ...bounds, from: Math.max(bounds.from, from) }, taste);
   if (place) {
     state.set(job.index, place);
     return true;
   }
-  if (depth >= MAX_DEPTH || allowedRigs(state, job).length === 0) return false;
-  return pushPredecessors(state, job, from, taste, depth);
+  const held = job.followers.some((f) => state.placed[f]);
+  if (held || depth >= MAX_DEPTH || allowedRigs(state, job).length === 0) return false;
+  return pushPredecessors(state, job, from, taste, depth, patience);
 }
 
 function pushPredecessors(
@@ -70,10 +70,11 @@ function pushPredecessors(
   from: number,
   taste: Taste,
   depth: number,
+  patience: Patience,
 ): boolean {
   const { jobs, notAfter } = state.problem;
   const mark = state.mark();
-  for (let push = 0; push < MAX_PUSHES; push++) {
+  while (patience.pushes-- > 0) {
     const bounds = startBounds(state, job);
     if (!bounds) break;
     const start = Math.max(bounds.from, from);
@@ -88,22 +89,29 @@ function pushPredecessors(
     const before = jobs[limit.job]!;
     const old = state.placed[before.index]!;
     const later = Math.max(open.start - limit.gapMax - before.longest, old.start + GRID);
-    if (!pushLater(state, before, later, taste, depth)) break;
+    if (!pushLater(state, before, later, taste, depth, patience)) break;
   }
   state.rollback(mark);
   return false;
 }
 
 /** Moves a booking to `later` or after and sets what followed it again. False: all left undone. */
-function pushLater(state: State, job: Job, later: number, taste: Taste, depth: number): boolean {
+function pushLater(
+  state: State,
+  job: Job,
+  later: number,
+  taste: Taste,
+  depth: number,
+  patience: Patience,
+): boolean {
   const { jobs, order } = state.problem;
   const mark = state.mark();
   const family = withFollowers(state, [job.index]);
   const stood = order.filter((i) => family.has(i) && i !== job.index && state.placed[i]);
   for (const i of [job.index, ...stood]) state.set(i, null);
   const fine =
-    insert(state, job, later, taste, depth + 1) &&
-    stood.every((i) => insert(state, jobs[i]!, undefined, taste, depth + 1));
+    insert(state, job, later, taste, depth + 1, patience) &&
+    stood.every((i) => insert(state, jobs[i]!, undefined, taste, depth + 1, patience));
   if (!fine) state.rollback(mark);
   return fine;
 }

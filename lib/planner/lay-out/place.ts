@@ -3,9 +3,10 @@ import { LEAST_LOADED, nextStaffed, staffVisits, type Taste } from './staff';
 import type { Placed, State } from './state';
 import { DAY, GRID, HOUR } from './time';
 
-export type Bounds = { from: number; to: number };
+/** Between which instants a booking may start and, where followers stand, must end. */
+export type Bounds = { from: number; to: number; endFrom?: number; endTo?: number };
 
-/** Between which instants a booking may start, going by the plan's span and its predecessors. */
+/** Bounds by the plan's span, the predecessors and the followers that stand; null: one is missing. */
 export function startBounds(state: State, job: Job): Bounds | null {
   const { notBefore, notAfter } = state.problem;
   let from = notBefore;
@@ -16,7 +17,27 @@ export function startBounds(state: State, job: Job): Bounds | null {
     from = Math.max(from, before.end + a.gapMin);
     to = Math.min(to, before.end + a.gapMax);
   }
-  return { from, to };
+  const ends = endBounds(state, job);
+  return {
+    from: Math.max(from, ends.endFrom - job.longest),
+    to: Math.min(to, ends.endTo - job.duration),
+    ...ends,
+  };
+}
+
+function endBounds(state: State, job: Job): { endFrom: number; endTo: number } {
+  let endFrom = Number.NEGATIVE_INFINITY;
+  let endTo = state.problem.notAfter;
+  for (const f of job.followers) {
+    const next = state.placed[f];
+    if (!next) continue;
+    for (const a of state.problem.jobs[f]!.after) {
+      if (a.job !== job.index) continue;
+      endFrom = Math.max(endFrom, next.start - a.gapMax);
+      endTo = Math.min(endTo, next.start - a.gapMin);
+    }
+  }
+  return { endFrom, endTo };
 }
 
 /** The rigs that a booking may use: that of its group once one of the group stands. */
@@ -31,12 +52,16 @@ export function allowedRigs(state: State, job: Job): number[] {
   return shared.length > 0 ? shared : job.rigs;
 }
 
+/** Misses in one plan after which the search goes in large steps, so that its time stays bounded. */
+const TIRED = 50_000;
+
 export function snapUp(t: number, notBefore: number): number {
   return notBefore + Math.ceil((t - notBefore) / GRID) * GRID;
 }
 
 /** Where visits of one booking get in each other's way no jump is exact: small steps, then larger. */
-function stride(misses: number): number {
+function stride(misses: number, total: number): number {
+  if (total > TIRED) return total > 4 * TIRED ? 6 * HOUR : HOUR;
   if (misses < DAY / GRID) return GRID;
   return misses < 1000 ? 3 * GRID : HOUR;
 }
@@ -91,6 +116,7 @@ export function earliestPlace(
   taste: Taste = LEAST_LOADED,
 ): Placed | null {
   const { notBefore, notAfter } = state.problem;
+  const { endFrom = notBefore, endTo = notAfter } = bounds;
   const rigs = allowedRigs(state, job);
   let t = snapUp(bounds.from, notBefore);
   let misses = 0;
@@ -105,13 +131,13 @@ export function earliestPlace(
       t = staffed;
       continue;
     }
-    const attendance = staffVisits(state, job, t, notAfter, taste);
+    const attendance = staffVisits(state, job, t, endTo, taste);
     if (attendance) {
       const end = Math.max(t + job.duration, ...attendance.map((a) => a.to));
-      const rig = chooseRig(state, rigs, t, end, taste);
+      const rig = end < endFrom ? null : chooseRig(state, rigs, t, end, taste);
       if (rig !== null) return { start: t, end, rig, attendance };
     }
-    t += stride(misses++);
+    t += stride(misses++, state.misses++);
   }
   return null;
 }

@@ -14,6 +14,10 @@ export class State {
   private readonly log: Step[] = [];
   /** Looks at people's calendars so far: the measure of work, the same on every machine. */
   work = 0;
+  /** Starts tried in vain because visits of one booking got in each other's way. */
+  misses = 0;
+  /** Bookings that have no place even in an empty calendar; never tried again. */
+  readonly hopeless = new Set<number>();
 
   constructor(readonly problem: Problem) {
     this.placed = problem.jobs.map(() => null);
