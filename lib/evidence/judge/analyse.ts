@@ -5,7 +5,7 @@ import {
   type DrivenFit,
   type DrivenModel,
   drivenModel,
-  fitDrift,
+  fitDrifting,
   fitDriven,
   type GrowthInterval,
   growthInterval,
@@ -41,8 +41,8 @@ export type Rhythm = {
   interval: GrowthInterval;
   ring: RingTest | null;
   amplitude: { value: number; halfWidth: number };
-  /** Growth rate of the later half alone (per whole record) and its standard error. */
-  late: { growth: number; sd: number } | null;
+  /** Amplitude over the first third (or cycle). */
+  early: number;
   /** sd of the fit's scatter over the rhythm's amplitude. */
   noiseRatio: number;
 };
@@ -58,7 +58,7 @@ export function analyse(full: Series, expected: JudgeRequest['expectedPeriod']):
   const n = cleaned.t.length;
   const trend = trendColumns(cleaned.t, oscillation.trendDegree);
   const plain = cleaned.y.map((v, i) => v - oscillation.overtones[i]!);
-  const fitted = fitWithDrift(cleaned, plain, trend, floor, bounds, oscillation);
+  const fitted = fitWithDrift(cleaned, plain, trend, floor, bounds, oscillation, none.kind);
   if (fitted === null) return { ...bare, evidence: -Infinity, rhythm: null };
   const { model, driven } = fitted;
   const search_ = Math.log(Math.max(2, bounds.maxFrequency - bounds.minFrequency));
@@ -66,13 +66,13 @@ export function analyse(full: Series, expected: JudgeRequest['expectedPeriod']):
   const isDriven = driven.logLikelihood - driven.undrivenLogLikelihood > 0.5;
   const cost = ((free + (isDriven ? 1 : 0)) / 2) * Math.log(n) + search_;
   const evidence = driven.logLikelihood - cost - none.score;
-  const rhythm = weigh(cleaned, oscillation, driven, growthInterval(model, driven), bounds);
+  const rhythm = weigh(cleaned, oscillation, driven, growthInterval(model, driven));
   return { ...bare, evidence, rhythm };
 }
 
 /**
- * The stochastic oscillation; where noise seems to drive it, an undriven one on a wandering level is
- * tried beside it, so that a wandering baseline is not taken for a wandering rhythm.
+ * The stochastic oscillation; where noise seems to drive it, one on a wandering level is tried beside it, so
+ * that a wandering baseline is not taken for a wandering rhythm.
  */
 function fitWithDrift(
   series: Series,
@@ -81,22 +81,22 @@ function fitWithDrift(
   floor: number,
   bounds: Bounds,
   oscillation: Oscillation,
+  kind: Null['kind'],
 ): { model: DrivenModel; driven: DrivenFit; extra: number } | null {
   const starts = drivenStarts(series, oscillation);
   const model = drivenModel(series.t, plain, trend, floor, bounds);
   const driven = fitDriven(model, starts);
   if (driven === null) return null;
-  if (driven.logLikelihood - driven.undrivenLogLikelihood < 1.5) return { model, driven, extra: 0 };
-  const drift = fitDrift(series.t, plain, trend, floor, oscillation);
-  if (
-    drift === null ||
-    drift.logLikelihood - 0.5 * Math.log(series.t.length) < driven.logLikelihood
-  ) {
+  const wanders = kind === 'wandering' || kind === 'bend';
+  if (!wanders && driven.logLikelihood - driven.undrivenLogLikelihood < 1.5) {
     return { model, driven, extra: 0 };
   }
-  const drifting = drivenModel(series.t, plain, trend, floor, bounds, drift);
-  const again = fitDriven(drifting, starts);
-  return again && { model: drifting, driven: again, extra: 2 };
+  const both = fitDrifting(series.t, plain, trend, floor, bounds, driven);
+  const price = Math.log(series.t.length);
+  if (both === null || both.driven.logLikelihood - price < driven.logLikelihood) {
+    return { model, driven, extra: 0 };
+  }
+  return { model: both.model, driven: both.driven, extra: 2 };
 }
 
 /** Residuals of the best single-harmonic fit, for finding slips. */
@@ -116,7 +116,6 @@ function weigh(
   oscillation: Oscillation,
   driven: DrivenFit,
   interval: GrowthInterval,
-  bounds: Bounds,
 ): Rhythm {
   const { frequency, harmonics, trendDegree } = oscillation;
   const trend = trendColumns(series.t, trendDegree);
@@ -129,6 +128,7 @@ function weigh(
     frequency >= 40 ? 2 : 1,
   );
   const amplitude = lateAmplitude(series.t, level.residuals, frequency, harmonics);
+  const mirrored = Float64Array.from(level.residuals).reverse();
   const sd = Math.sqrt(oscillation.rss / Math.max(1, series.t.length - 4 - 2 * harmonics));
   return {
     oscillation,
@@ -136,27 +136,32 @@ function weigh(
     interval,
     ring: ringTest(sequence),
     amplitude,
-    late: lateGrowth(series, oscillation, bounds),
+    early: lateAmplitude(mirror(series.t), mirrored, frequency, harmonics).value,
     noiseRatio: sd / Math.max(amplitude.value, 1e-12),
   };
 }
 
-/** Growth over the later half; the standard error is √(24/n)·(s/A) per half record. */
-function lateGrowth(series: Series, whole: Oscillation, bounds: Bounds) {
-  const index = Array.from(series.t.keys()).filter((i) => series.t[i]! >= 0.5);
-  const n = index.length;
-  if (n < 6 + 2 * whole.harmonics) return null;
-  const half = {
-    t: Float64Array.from(index, (i) => 2 * series.t[i]! - 1),
-    y: Float64Array.from(index, (i) => series.y[i]!),
+function mirror(t: Float64Array): Float64Array {
+  return t.map((v) => 1 - v).reverse();
+}
+
+/** The last part of a record, from `share` of its length on, as a record of its own. */
+export function laterPart(series: Series, share: number): Series {
+  const index = Array.from(series.t.keys()).filter((i) => series.t[i]! >= share);
+  const first = series.t[index[0]!]!;
+  const length = 1 - first;
+  const values = index.map((i) => series.y[i]!);
+  const mean = values.reduce((s, v) => s + v / values.length, 0);
+  const sd = Math.sqrt(values.reduce((s, v) => s + (v - mean) ** 2 / values.length, 0)) || 1;
+  return {
+    t: Float64Array.from(index, (i) => (series.t[i]! - first) / length),
+    y: Float64Array.from(values, (v) => (v - mean) / sd),
+    noise: series.noise === null ? null : series.noise / sd,
+    span: series.span * length,
+    totalSpan: series.totalSpan * length,
+    scale: series.scale * sd,
+    readings: index.length,
   };
-  const halfBounds = { minFrequency: 0.5, maxFrequency: bounds.maxFrequency };
-  const start = { growth: 0, frequency: whole.frequency / 2 };
-  const fit = fitOscillation(half, start, whole.harmonics, 1, halfBounds);
-  if (fit === null) return null;
-  const { value } = lateAmplitude(half.t, half.y, fit.frequency, whole.harmonics);
-  const s = Math.sqrt(fit.rss / Math.max(1, n - 4 - 2 * whole.harmonics));
-  return { growth: 2 * fit.growth, sd: 2 * Math.sqrt(24 / n) * (s / Math.max(value, 1e-12)) };
 }
 
 function frequencyBounds(series: Series, expected: JudgeRequest['expectedPeriod']): Bounds {

@@ -46,7 +46,7 @@ export function decideRhythm(r: Rhythm, samplesPerCycle: number): Decision {
   if (isDriven(r)) return decideDriven(r, growth, cycles);
   if (growth.low > 0) return decideGrowing(growth, cycles);
   const high = growth.value + THRESHOLDS.widen * (growth.high - growth.value);
-  if (high < 0) return decideDecaying(r, growth, cycles);
+  if (high < 0) return decideDecaying(growth, cycles);
   const loss = cycles < THRESHOLDS.fewCycles ? THRESHOLDS.lossInFewCycles : THRESHOLDS.loss;
   if (cycles >= THRESHOLDS.sustainedCycles && growth.low > -loss) {
     return {
@@ -128,37 +128,7 @@ function decideGrowing(growth: NonNullable<Decision['growth']>, cycles: number):
   };
 }
 
-function decideDecaying(
-  r: Rhythm,
-  growth: NonNullable<Decision['growth']>,
-  cycles: number,
-): Decision {
-  const late = r.late;
-  const levelled =
-    late !== null &&
-    late.growth + 1.645 * late.sd > 0 &&
-    late.growth - 1.645 * late.sd > -THRESHOLDS.loss &&
-    late.growth > 0.5 * growth.value;
-  if (levelled && cycles >= 2 * THRESHOLDS.sustainedCycles) {
-    const half = 1.645 * late.sd;
-    return {
-      verdict: 'sustained',
-      growth: { value: late.growth, low: late.growth - half, high: late.growth + half },
-      reasons: [
-        `The rhythm shrank at first and then kept its size: over the later ${figure(cycles / 2)} cycles no decay is seen.`,
-      ],
-    };
-  }
-  if (levelled && growth.value > -0.7) {
-    return {
-      verdict: 'undecided',
-      growth,
-      reasons: [
-        'The rhythm shrinks a little early in the record and not visibly later.',
-        `To settle it, record about ${Math.ceil(Math.max(2 * cycles, 10))} cycles from the same setting.`,
-      ],
-    };
-  }
+function decideDecaying(growth: NonNullable<Decision['growth']>, cycles: number): Decision {
   const life = -cycles / growth.value;
   return {
     verdict: 'damped',

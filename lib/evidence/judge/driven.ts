@@ -41,48 +41,102 @@ export function drivenModel(
     likelihood({
       growth: p.growth,
       frequency: p.frequency,
-      drive: p.logDrive < LOG_DRIVE.low ? 0 : Math.exp(p.logDrive),
+      drive: driveOf(p),
       driftVariance: drift.driftVariance,
       driftRate: drift.driftRate,
     });
-  const inside = (p: Point) =>
+  return {
+    evaluate: (p) => (isInside(p, bounds) ? (at(p)?.logLikelihood ?? -Infinity) : -Infinity),
+    noiseVariance: (p) => at(p)?.noiseVariance ?? Number.POSITIVE_INFINITY,
+  };
+}
+
+function driveOf(p: Point): number {
+  return p.logDrive < LOG_DRIVE.low ? 0 : Math.exp(p.logDrive);
+}
+
+function isInside(p: Point, bounds: Bounds): boolean {
+  return (
     p.frequency >= bounds.minFrequency &&
     p.frequency <= bounds.maxFrequency &&
     p.growth <= MAX_GROWTH &&
     p.growth >= -6 * p.frequency - 10 &&
-    p.logDrive <= LOG_DRIVE.high;
-  return {
-    evaluate: (p) => (inside(p) ? (at(p)?.logLikelihood ?? -Infinity) : -Infinity),
-    noiseVariance: (p) => at(p)?.noiseVariance ?? Number.POSITIVE_INFINITY,
-  };
+    p.logDrive <= LOG_DRIVE.high
+  );
 }
 
 /** A wandering level: variance over s², and relaxation rate per record. */
 export type Drift = { driftVariance: number; driftRate: number };
 
-/** Undriven oscillation near the given one, on an Ornstein–Uhlenbeck level; null when none is found. */
-export function fitDrift(
+type Wide = Point & Drift;
+
+/**
+ * Oscillation and wandering level fitted together, driven and not; null when none is found.
+ * `near` is the oscillation fitted without a wandering level.
+ */
+export function fitDrifting(
   t: Float64Array,
   y: Float64Array,
   trend: Columns,
   floor: number,
-  near: { growth: number; frequency: number },
-): (Drift & { logLikelihood: number }) | null {
+  bounds: Bounds,
+  near: DrivenFit,
+): { drift: Drift; driven: DrivenFit; model: DrivenModel } | null {
   const likelihood = makeLikelihood(t, y, trend, floor);
-  const unpack = ([logRate, logVariance]: number[]): Drift => ({
-    driftRate: Math.exp(logRate!),
-    driftVariance: Math.exp(logVariance!),
-  });
-  const objective = (x: number[]) => {
-    if (Math.abs(x[1]!) > 12 || x[0]! < 0 || x[0]! > Math.log(4 * t.length)) return Infinity;
-    const answer = likelihood({ ...near, growth: x[2]!, drive: 0, ...unpack(x) });
-    return answer === null ? Infinity : -answer.logLikelihood;
+  const value = (w: Wide) => {
+    const rate = Math.log(w.driftRate);
+    const outside =
+      rate < 0 || rate > Math.log(4 * t.length) || Math.abs(Math.log(w.driftVariance)) > 12;
+    if (outside || !isInside(w, bounds)) return -Infinity;
+    return likelihood({ ...w, drive: driveOf(w) })?.logLikelihood ?? -Infinity;
   };
-  const runs = [2.5, Math.log(t.length) - 0.7].map((rate) =>
-    nelderMead(objective, [rate, 0, near.growth], [0.8, 1, 0.2], 0.01, 110),
-  );
-  const best = runs.reduce((a, b) => (b.value < a.value ? b : a));
-  return Number.isFinite(best.value) ? { ...unpack(best.point), logLikelihood: -best.value } : null;
+  const climb = (start: Wide, free: boolean) => {
+    const unpack = (x: number[]): Wide => ({
+      growth: x[0]!,
+      frequency: x[1]!,
+      driftRate: Math.exp(x[2]!),
+      driftVariance: Math.exp(x[3]!),
+      logDrive: free ? x[4]! : LOG_DRIVE.none,
+    });
+    const x = [start.growth, start.frequency, Math.log(start.driftRate), 0];
+    const steps = [Math.max(0.3, 0.2 * Math.abs(start.growth)), 0.15, 0.8, 1];
+    const result = nelderMead(
+      (v) => -value(unpack(v)),
+      free ? [...x, start.logDrive] : x,
+      free ? [...steps, 1] : steps,
+      0.01,
+      free ? 260 : 180,
+    );
+    return { point: unpack(result.point), value: -result.value };
+  };
+  const better = <T extends { value: number }>(a: T, b: T) => (b.value > a.value ? b : a);
+  const rates = [3, 0.5 * t.length];
+  const level = { driftVariance: 1, logDrive: LOG_DRIVE.none, frequency: near.frequency };
+  const quiet = rates
+    .map((driftRate) => climb({ ...level, driftRate, growth: near.undrivenGrowth }, false))
+    .reduce(better);
+  const drives = [near.logDrive, 2].filter((d) => d >= LOG_DRIVE.low);
+  const loud = drives
+    .map((logDrive) =>
+      climb({ ...level, growth: near.growth, driftRate: quiet.point.driftRate, logDrive }, true),
+    )
+    .reduce(better, quiet);
+  if (!Number.isFinite(loud.value)) return null;
+  const model = drivenModel(t, y, trend, floor, bounds, loud.point);
+  return {
+    drift: loud.point,
+    model,
+    driven: {
+      growth: loud.point.growth,
+      frequency: loud.point.frequency,
+      logDrive: loud.point.logDrive,
+      logLikelihood: loud.value,
+      noiseVariance: model.noiseVariance(loud.point),
+      undrivenLogLikelihood: quiet.value,
+      undrivenGrowth: quiet.point.growth,
+      frequencySd: frequencySd(model, loud.point, loud.value),
+    },
+  };
 }
 
 const SCAN = [-4, -1, 1, 3, 5, 7, 9, 12];

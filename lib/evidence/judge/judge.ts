@@ -1,5 +1,5 @@
 import type { Interval, JudgeAnswer, JudgeRequest } from '@/lib/contracts';
-import { type Analysis, analyse, type Rhythm } from './analyse';
+import { type Analysis, analyse, laterPart, type Rhythm } from './analyse';
 import { type Decision, decideRhythm, isDriven, THRESHOLDS } from './decide';
 import { MIN_READINGS, prepare, type Series } from './prepare';
 import { decideQuiet } from './quiet';
@@ -57,7 +57,8 @@ function rhythmic(
   const frequency = driven ? rhythm.driven.frequency : rhythm.oscillation.frequency;
   const period = series.span / frequency;
   const covered = coverage({ readings: series.readings, span: series.totalSpan }, period);
-  const decision = decideRhythm(rhythm, covered.samplesPerCycle);
+  const decision =
+    settledLater(request, series, rhythm) ?? decideRhythm(rhythm, covered.samplesPerCycle);
   const half = 1.645 * rhythm.driven.frequencySd;
   const amplitude = rhythm.amplitude;
   return {
@@ -76,6 +77,42 @@ function rhythmic(
     falseAlarm: analysis.falseAlarm,
     ...covered,
     reasons: [...decision.reasons, ...cautions(request, period, covered.samplesPerCycle), ...extra],
+  };
+}
+
+/** Where the later part of a record may begin when its first part looks like a transient. */
+const LATER = [0.4, 0.6];
+
+/**
+ * A rhythm that first grew or shrank and then keeps its size is sustained: the later part of such a
+ * record is judged alone. Null where the record shows no such beginning or the later part does not decide.
+ */
+function settledLater(request: JudgeRequest, series: Series, rhythm: Rhythm): Decision | null {
+  const { early, amplitude, oscillation } = rhythm;
+  const grew = early < 0.6 * amplitude.value;
+  const shrank = early > 1.15 * amplitude.value && amplitude.value > 0.3 * early;
+  if (!(grew || shrank)) return null;
+  for (const share of LATER) {
+    if ((1 - share) * oscillation.frequency < THRESHOLDS.sustainedCycles) continue;
+    const decision = sustainedFrom(request, series, share);
+    const beginning = `The rhythm ${grew ? 'grew' : 'shrank'} at first; the later ${Math.round(100 * (1 - share))} % of the record was judged alone.`;
+    if (decision) return { ...decision, reasons: [beginning, ...decision.reasons] };
+  }
+  return null;
+}
+
+function sustainedFrom(request: JudgeRequest, series: Series, share: number): Decision | null {
+  const part = laterPart(series, share);
+  const again = analyse(part, request.expectedPeriod);
+  if (again.rhythm === null || again.evidence < THRESHOLDS.evidence) return null;
+  const decision = decideRhythm(again.rhythm, part.readings / again.rhythm.oscillation.frequency);
+  if (decision.verdict !== 'sustained' || decision.growth === null) return null;
+  const { value, low, high } = decision.growth;
+  const stretch = series.span / part.span;
+  return {
+    verdict: 'sustained',
+    growth: { value: value * stretch, low: low * stretch, high: high * stretch },
+    reasons: decision.reasons,
   };
 }
 
