@@ -1,82 +1,23 @@
 'use client';
 
-import { useRouter } from 'next/navigation';
-import { useRef, useState } from 'react';
-import { v7 as uuid } from 'uuid';
-import { ActionProblem, FormProblem, TextArea, TextField, useAction } from '@/components/forms';
+import { useRef } from 'react';
+import { ActionProblem, FormProblem, TextArea, TextField } from '@/components/forms';
 import { Key, Plate } from '@/components/ui';
-import type { Control, SystemModel } from '@/lib/contracts';
 import type { FieldProblem } from '@/lib/contracts/forms/system';
-import { saveSystem } from '../actions';
 import { ControlSection } from './control-section';
-import { draftOf, type SystemDraft } from './draft';
-import { systemOf } from './draft-to-system';
+import type { SystemDraft } from './draft';
 import { ParametersSection } from './parameters-section';
 import { ReadoutsSection } from './readouts-section';
+import { type SystemFormStart, useSystemForm } from './use-system-form';
 import { VariablesSection } from './variables-section';
 
-type Props = {
-  studyId: string;
-  number: number;
-  model: SystemModel;
-  control: Control;
-  doseLabel: string;
-  doseUnit: string;
-};
-
-/** The problem of a field: its own, or the nearest that names a part of it. */
-function finder(problems: FieldProblem[]) {
-  const byField = new Map(problems.map((p) => [p.at, p.message]));
-  return (at: string) => byField.get(at);
-}
-
-function focusProblem(form: HTMLFormElement | null) {
-  requestAnimationFrame(() => {
-    const first = form?.querySelector<HTMLElement>('[aria-invalid="true"], [data-problems]');
-    first?.focus();
-  });
-}
+type Props = SystemFormStart & { doseLabel: string; doseUnit: string };
 
 /** A system as a form. Saving makes the next version; what was typed stays until that is done. */
-export function SystemForm(props: Props) {
-  const { studyId, number, model, control, doseLabel, doseUnit } = props;
-  const router = useRouter();
+export function SystemForm({ doseLabel, doseUnit, ...start }: Props) {
   const form = useRef<HTMLFormElement>(null);
-  const [id, setId] = useState(() => uuid());
-  const [draft, setDraft] = useState<SystemDraft>(() => draftOf(model, control));
-  const [reason, setReason] = useState('');
-  const [found, setFound] = useState<FieldProblem[]>([]);
-  const [saved, setSaved] = useState<number | null>(null);
-  // Held from when the draft was filled: the page may learn of a newer version while somebody types.
-  const [basedOn, setBasedOn] = useState(number);
-  const { run, pending, problem } = useAction(saveSystem, {
-    onDone: (result) => {
-      if (result.outcome === 'to mend') return setFound(result.problems);
-      setSaved(result.number);
-      setBasedOn(result.number);
-      setReason('');
-      setId(uuid());
-      router.refresh();
-    },
-  });
-  const change = (part: Partial<SystemDraft>) => {
-    setSaved(null);
-    setDraft((now) => ({ ...now, ...part }));
-  };
-  const submit = async () => {
-    const read = systemOf(draft);
-    const reasonProblem = reason.trim()
-      ? []
-      : [{ at: 'reason', message: 'Say what changed and why' }];
-    const all = [...(read.ok ? [] : read.problems), ...reasonProblem];
-    setFound(all);
-    if (read.ok && all.length === 0) {
-      const { model: nextModel, control: nextControl } = read;
-      const next = { model: nextModel, control: nextControl };
-      await run({ id, studyId, basedOn, ...next, reason });
-    }
-    focusProblem(form.current);
-  };
+  const held = useSystemForm(start);
+  const { draft, change, found, problem, pending, saved, reason } = held;
   const problemAt = finder(found);
   const section = { draft, change, problemAt };
   return (
@@ -86,7 +27,7 @@ export function SystemForm(props: Props) {
       className="flex flex-col gap-6"
       onSubmit={(event) => {
         event.preventDefault();
-        void submit();
+        void held.submit().then(() => focusProblem(form.current));
       }}
     >
       <NameSection {...section} />
@@ -102,7 +43,7 @@ export function SystemForm(props: Props) {
             rows={2}
             maxLength={300}
             value={reason}
-            onChange={(event) => setReason(event.target.value)}
+            onChange={(event) => held.setReason(event.target.value)}
             problem={problemAt('reason')}
           />
           <Summary problems={found} />
@@ -119,6 +60,19 @@ export function SystemForm(props: Props) {
       </Plate>
     </form>
   );
+}
+
+/** The problem of a field, by its dotted path. */
+function finder(problems: FieldProblem[]) {
+  const byField = new Map(problems.map((p) => [p.at, p.message]));
+  return (at: string) => byField.get(at);
+}
+
+function focusProblem(form: HTMLFormElement | null) {
+  requestAnimationFrame(() => {
+    const first = form?.querySelector<HTMLElement>('[aria-invalid="true"], [data-problems]');
+    first?.focus();
+  });
 }
 
 /** All that has to be mended, each line leading to its field. */
