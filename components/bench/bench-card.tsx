@@ -50,7 +50,7 @@ export function BenchCard(props: BenchCardProps) {
         <div className="flex min-w-0 flex-col">
           <BenchHead {...props.head} />
           {props.ribbon && !blinded ? (
-            <div className="mt-3 rounded-key border border-rule bg-plate py-2">
+            <div className="mt-[11px] rounded-key border border-rule bg-plate py-2">
               <OnsetRibbon {...props.ribbon} size="card" width={754} />
             </div>
           ) : null}

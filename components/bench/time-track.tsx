@@ -15,7 +15,7 @@ export function TimeTrack(props: TimeTrackProps) {
   const percent = (t: number) => `${share(t) * 100}%`;
   const [now, earliest, latest] = [share(props.now), share(props.earliest), share(props.latest)];
   return (
-    <div className="relative mt-6 h-[26px]" aria-hidden="true">
+    <div className="relative mt-4 h-[26px]" aria-hidden="true">
       <div className="absolute inset-x-0 top-1 h-[11px] overflow-hidden border border-edge bg-well">
         <span
           className="absolute inset-y-0 bg-ink/25"

@@ -13,8 +13,8 @@ export function axisFromZero(largest: number, steps = 4): Axis {
   return { domain: [0, count * step * 1.19], ticks };
 }
 
-/** Axis that holds all values and, if asked, zero; a twelfth of the span is free at both ends. */
-export function axisOver(values: readonly number[], withZero: boolean, steps = 5): Axis {
+/** Axis that holds all values and, if asked, zero; a twelfth of the span is free at both ends. Three to eight ticks. */
+export function axisOver(values: readonly number[], withZero: boolean, steps = 8): Axis {
   const finite = values.filter(Number.isFinite);
   if (withZero) finite.push(0);
   let low = finite.length > 0 ? Math.min(...finite) : 0;

@@ -36,6 +36,9 @@ export type JoinedChartProps = {
   width?: number;
 };
 
+/** Below this width the curve goes without its name, px. */
+const NAME_FROM = 600;
+
 /** Amplitude against the control parameter, joined beneath the page ribbon on the same scale. */
 export function JoinedChart(props: JoinedChartProps) {
   const { from, to, height = 232, observations, predicted } = props;
@@ -73,7 +76,9 @@ export function JoinedChart(props: JoinedChartProps) {
             />
           ))}
           <OnsetLines values={props.onsets} places={places} base={base} />
-          {pieces.length > 0 ? <CurveName {...props} places={places} base={base} /> : null}
+          {pieces.length > 0 && width >= NAME_FROM ? (
+            <CurveName {...props} places={places} base={base} />
+          ) : null}
           <ObservationMarks observations={observations} places={places} base={base} width={width} />
         </>
       )}

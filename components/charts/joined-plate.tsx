@@ -16,7 +16,7 @@ export function JoinedPlate({ chart, width, ...data }: JoinedPlateProps) {
       <div className="hidden pt-2 pb-1.5 tablet:block">
         <OnsetRibbon {...data} size="page" width={width} />
       </div>
-      <div className="px-1 pt-2 pb-1.5 tablet:hidden">
+      <div className="px-2.5 pt-2 pb-1.5 tablet:hidden">
         <OnsetRibbon {...data} size="card" />
       </div>
       {chart ? (

@@ -5,6 +5,7 @@ import { MARK_COLOUR, type MarkState } from '@/components/marks/states';
 import type { Interval } from '@/lib/contracts';
 import { dodge, piecesByStability } from './axis';
 import type { Places } from './chart-frame';
+import { placeNames } from './place-names';
 
 const crisp = (at: number) => Math.round(at) + 0.5;
 
@@ -94,23 +95,22 @@ type MarksProps = {
 /** Observations as marks on a disc of the ground, with 90 % whiskers, names in place. */
 export function ObservationMarks({ observations, places, base, width, d = 12 }: MarksProps) {
   const floor = (at: number) => Math.min(Math.max(at, 0), base);
-  return placeObservations(observations).map((o) => {
-    const x = places.x(o.control) + o.shift;
-    const y = floor(places.y(o.measure.value));
-    const [top, bottom] = [floor(places.y(o.measure.high)), floor(places.y(o.measure.low))];
-    const left = x + 16 + (o.label?.length ?? 0) * 6.5 > width - 16;
+  const placed = placeObservations(observations).map((o) => ({
+    ...o,
+    x: places.x(o.control) + o.shift,
+    y: floor(places.y(o.measure.value)),
+  }));
+  const names = placeNames(placed, width, base);
+  return placed.map((o, i) => {
+    const name = names[i];
+    const whisker = `M${o.x} ${floor(places.y(o.measure.high))}V${floor(places.y(o.measure.low))}`;
     return (
       <g key={o.key}>
-        <path
-          d={`M${x} ${top}V${bottom}`}
-          stroke={MARK_COLOUR[o.state]}
-          strokeWidth={1.5}
-          fill="none"
-        />
-        <circle cx={x} cy={y} r={d / 2 + 1.5} fill="var(--plate)" />
-        <MarkShape state={o.state} x={x} y={y} d={d} />
-        {o.label ? (
-          <Name x={left ? x - 16 : x + 16} y={y - 1} end={left} strong>
+        <path d={whisker} stroke={MARK_COLOUR[o.state]} strokeWidth={1.5} fill="none" />
+        <circle cx={o.x} cy={o.y} r={d / 2 + 1.5} fill="var(--plate)" />
+        <MarkShape state={o.state} x={o.x} y={o.y} d={d} />
+        {o.label && name ? (
+          <Name x={name.x} y={name.y} end={name.end} strong>
             {o.label}
           </Name>
         ) : null}

@@ -178,8 +178,13 @@ export function ribbonTexts(
     else if (lower.length === 0) lower.push({ ...at, text, y: dim.lowerText });
   }
   const covered = lower.map((t) => boxOf(t, dim.font.label));
-  const scale = numerals(data, dim, width, size).filter(
-    (t) => !covered.some((b) => overlaps(boxOf(t, dim.font.numeral), b, NUMERAL_GAP)),
-  );
+  const clear = (t: Text, gap: number) =>
+    !covered.some((b) => overlaps(boxOf(t, dim.font.numeral), b, gap));
+  const scale = numerals(data, dim, width, size).flatMap((t) => {
+    if (clear(t, NUMERAL_GAP)) return t;
+    // The unit stays wherever it fits, even where the end's numeral has to go.
+    const unit = { ...t, text: unitText(data.unit) };
+    return t.anchor === 'end' && unit.text !== '' && clear(unit, 4) ? unit : [];
+  });
   return [...scale, ...upper, ...lower];
 }

@@ -1,0 +1,72 @@
+import { describe, expect, test } from 'vitest';
+import { axisFromZero, axisOver, dodge, piecesByStability } from '@/components/charts/axis';
+import { placeNames } from '@/components/charts/place-names';
+
+describe('axes', () => {
+  test('from zero: ticks reach the largest value and the domain leaves room above', () => {
+    const axis = axisFromZero(35);
+    expect(axis.ticks.map((t) => t.text)).toEqual(['10', '20', '30', '40']);
+    expect(axis.domain[0]).toBe(0);
+    expect(axis.domain[1]).toBeGreaterThan(40);
+  });
+  test.each([0, Number.NaN, -3])('no positive value (%s) still gives an axis', (largest) => {
+    const axis = axisFromZero(largest);
+    expect(axis.domain[1]).toBeGreaterThan(0);
+    expect(axis.ticks.length).toBeGreaterThan(1);
+  });
+  test('over values: zero is held when asked for, equal values get room', () => {
+    const axis = axisOver([-3, -1], true);
+    expect(axis.domain[0]).toBeLessThan(-3);
+    expect(axis.domain[1]).toBeGreaterThan(0);
+    expect(axis.ticks.map((t) => t.text)).toContain('0');
+    const [low, high] = axisOver([5, 5], false).domain;
+    expect(high).toBeGreaterThan(low);
+    expect(axisOver([], false).ticks.length).toBeGreaterThan(0);
+  });
+  test.each([1e-9, 1, 1e9])('ticks lie inside the domain at a scale of %s', (k) => {
+    const { domain, ticks } = axisOver([-2 * k, 7 * k], true);
+    expect(ticks.length).toBeGreaterThan(2);
+    for (const t of ticks) {
+      expect(t.value).toBeGreaterThanOrEqual(domain[0]);
+      expect(t.value).toBeLessThanOrEqual(domain[1]);
+    }
+  });
+});
+
+describe('curves', () => {
+  test('are cut where stability changes, sharing the point between', () => {
+    const pieces = piecesByStability([0, 1, 2, 3], [5, 6, 7, 8], [true, true, false, false]);
+    expect(pieces.map((p) => p.stable)).toEqual([true, false]);
+    expect(pieces[1]!.points[0]).toEqual({ x: 1, y: 6 });
+  });
+  test('are interrupted where there is no value', () => {
+    const pieces = piecesByStability([0, 1, 2, 3], [5, null, 7, 8], undefined);
+    expect(pieces.map((p) => p.points.length)).toEqual([1, 2]);
+  });
+});
+
+describe('marks', () => {
+  test('of one place stand symmetrically about it', () => {
+    expect([0, 1, 2].map((i) => dodge(i, 3, 8))).toEqual([-8, 0, 8]);
+    expect(dodge(0, 1)).toBe(0);
+  });
+  test('names keep clear of other marks and of the ends', () => {
+    const names = placeNames(
+      [
+        { x: 100, y: 100, label: 'sustained' },
+        { x: 140, y: 100 },
+        { x: 380, y: 100, label: 'undecided' },
+      ],
+      400,
+      200,
+    );
+    expect(names[0]!.y !== 99 || names[0]!.end).toBe(true);
+    expect(names[1]).toBeNull();
+    expect(names[2]!.end).toBe(true);
+  });
+  test('a name that fits nowhere is left out', () => {
+    expect(placeNames([{ x: 30, y: 20, label: 'a very long name of a mark' }], 60, 40)).toEqual([
+      null,
+    ]);
+  });
+});
