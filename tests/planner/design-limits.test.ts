@@ -149,6 +149,21 @@ describe('what cannot be met is said', () => {
   });
 });
 
+describe('numbers beyond reason', () => {
+  const cases: [string, object, string][] = [
+    ['draws', { onset: { values: [1e300, -1e300] } }, 'onset'],
+    ['a doubt', { doubt: 30 }, 'doubt'],
+    ['a range', { range: [-1e308, 1e308] }, 'range'],
+  ];
+  for (const [what, request, at] of cases) {
+    it(`are refused with the field to mend: ${what}`, () => {
+      expect(() => answer(request)).toThrow(
+        expect.objectContaining({ code: 'limit-exceeded', at }),
+      );
+    });
+  }
+});
+
 describe('levels of one smallest step', () => {
   it('keeps it exactly where it binds: five around the mean of a narrow onset', () => {
     const found = of(answer({ levels: 5, limits: { smallestStep: 2 } }), 'onset');

@@ -1,4 +1,5 @@
 import type { DesignRequest } from '@/lib/contracts';
+import { EngineError } from '@/lib/contracts';
 import { normalMass, normalPdf } from './normal';
 
 /**
@@ -151,9 +152,26 @@ const POSITIVE_SDS = 2.3263;
 /**
  * The onset as believed before the series: the draws or the normal, with model doubt put on it.
  * Doubt is an independent lognormal factor; for onsets that can be ≤ 0, an independent normal of
- * sd doubt · (hi − lo). Not cut at the range.
+ * sd doubt · (hi − lo). Not cut at the range. Throws `limit-exceeded` where its variance or the
+ * width of the range is beyond what a number can hold.
  */
 export function priorOf(request: Pick<DesignRequest, 'onset' | 'doubt' | 'range'>): Prior {
+  const prior = doubted(request);
+  if (!Number.isFinite(prior.mean) || !Number.isFinite(prior.sd ** 2)) {
+    const at = request.doubt > 3 ? 'doubt' : 'onset';
+    throw new EngineError(
+      'limit-exceeded',
+      'the spread of the onset is too large to work with',
+      at,
+    );
+  }
+  if (!Number.isFinite(request.range[1] - request.range[0])) {
+    throw new EngineError('limit-exceeded', 'the range is too wide to work with', 'range');
+  }
+  return prior;
+}
+
+function doubted(request: Pick<DesignRequest, 'onset' | 'doubt' | 'range'>): Prior {
   const { onset, doubt, range } = request;
   const extra = doubt * (range[1] - range[0]);
   if ('mean' in onset) {
