@@ -18,8 +18,8 @@ export interface OnsetPlace {
 }
 
 const COUNT = 24;
-/** Steps × state length for all cycles of one answer: one to two seconds. */
-const WORK = 1_500_000;
+/** Steps × state length for all cycles of one answer: two seconds at most for small systems. */
+const WORK = 3_000_000;
 const KICK = 0.2;
 const MOST_FAILURES = 3;
 
