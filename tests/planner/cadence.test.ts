@@ -136,6 +136,13 @@ describe('cadence of a level', () => {
     expect(blind.notes[0]!.text).toContain('slower one');
   });
 
+  it('does not take an unknown rate for a rate of zero', () => {
+    const found = planCadence({ growthRate: null, period: { low: 10, value: 10, high: 10 } });
+    expect(found).toMatchObject({ settleMinutes: 100 });
+    expect(found.cycles).toBeCloseTo(6, 1);
+    expect(found.notes[0]!.text).toContain('does not reach this level');
+  });
+
   it('still plans where no rhythm is predicted', () => {
     const found = planCadence({ growthRate: -0.01, period: null });
     expect(found.notes.map((n) => n.code)).toContain('no-period');

@@ -35,6 +35,8 @@ const LEAST_READINGS = 6;
 const DEFAULT_READINGS = 12;
 const DEFAULT_NOISE = 0.2;
 const SETTLE_CAP_CYCLES = 30;
+/** Common practice where nothing is known of the rate. */
+const UNKNOWN_SETTLE_CYCLES = 10;
 const RECORD_CAP_CYCLES = 40;
 
 const NICE = [1, 1.2, 1.5, 2, 2.5, 3, 4, 5, 6, 7.5, 8];
@@ -71,8 +73,14 @@ const shown = (minutes: number): string => {
 };
 
 function settling(input: CadenceInput, period: number, notes: Note[]): number {
-  const rate = Math.abs(input.growthRate ?? 0);
   const cap = input.settleCap ?? SETTLE_CAP_CYCLES * period;
+  if (input.growthRate === null) {
+    const usual = Math.min(cap, UNKNOWN_SETTLE_CYCLES * period);
+    const text = `The prediction does not reach this level: settling is set to ${shown(usual)}.`;
+    notes.push({ code: 'slow-settling', text });
+    return usual;
+  }
+  const rate = Math.abs(input.growthRate);
   const tau = rate > 0 ? 1 / rate : Number.POSITIVE_INFINITY;
   const aim = SETTLE_AIM * tau;
   if (aim <= cap) return aim;
@@ -116,8 +124,7 @@ function recording(
   const cap = input.recordCap ?? RECORD_CAP_CYCLES * longestPeriod;
   const least = LEAST_CYCLES * longestPeriod;
   const noise = input.noiseShare ?? DEFAULT_NOISE;
-  const rate = input.growthRate ?? 0;
-  const tell = lengthToTell(rate, noise, step);
+  const tell = input.growthRate === null ? 0 : lengthToTell(input.growthRate, noise, step);
   const wanted = Math.max(least, tell);
   if (wanted <= cap) return wanted;
   const need = Number.isFinite(wanted)
