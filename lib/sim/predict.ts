@@ -10,13 +10,13 @@ import {
 import { cyclesAlongBranch } from './cycles/along-branch';
 import { checkDoseMap, controlToDose } from './dose-map';
 import { checkDelays } from './equations/check-delays';
-import { compileModel } from './equations/compile';
 import type { CompiledSystem } from './equations/types';
 import { type Analysis, analyse, analysisNotes, type Range } from './onset/analyse';
 import { coexistenceWindow } from './onset/coexistence';
 import { inspectCrossing } from './onset/locate';
 import { criticalityAt } from './onset/lyapunov';
 import type { Onset } from './onset/scan';
+import { compileRequestModel } from './request-model';
 import { propagate } from './uncertainty/propagate';
 
 export interface PredictHooks {
@@ -32,7 +32,7 @@ export interface PredictHooks {
 export function predict(request: PredictRequest, hooks: PredictHooks = {}): PredictAnswer {
   const { model, control } = request;
   checkDoseMap(control.doseMap);
-  const system = compileModel(model);
+  const system = compileRequestModel(model);
   const range = rangeOf(system, request);
   checkDelays(system, system.values, range.controlIndex, range.from, range.to);
   hooks.progress?.(0, request.draws, 'following the steady state');

@@ -5,9 +5,9 @@ import {
   EngineError,
 } from '@/lib/contracts';
 import { checkDelays } from '../equations/check-delays';
-import { compileModel } from '../equations/compile';
 import type { CompiledSystem } from '../equations/types';
 import { analyse } from '../onset/analyse';
+import { compileRequestModel } from '../request-model';
 import { BranchContext } from '../steady/node';
 import { Problem } from '../steady/problem';
 import { type CurvePoint, OnsetCurve } from './curve';
@@ -23,7 +23,7 @@ const SEEDS = [0.5, 0, 1, 0.25, 0.75, 0.125, 0.375, 0.625, 0.875];
  * @throws EngineError 'invalid-request', 'invalid-equation', 'no-steady-state'
  */
 export function boundary(request: BoundaryRequest): BoundaryAnswer {
-  const system = compileModel(request.model);
+  const system = compileRequestModel(request.model);
   const controlIndex = indexOf(system, request.control.symbol, 'control.symbol');
   const secondIndex = indexOf(system, request.second.symbol, 'second.symbol');
   refuseImpossible(request, controlIndex, secondIndex);

@@ -109,6 +109,7 @@ export function makeNode(
   const tangent = tangentAt(context, scale, dx, dControl);
   if (!tangent) return null;
   const spec = spectrum(problem, work, scale);
+  if (spec.roots.length === 0) return null;
   const complex: TrackedRoot[] = [];
   // A root far from the axis for its size does not reach it within one step.
   const candidates = spec.roots
