@@ -1,5 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { checkSystem } from '@/lib/server/systems/check-system';
+import { library } from '@/lib/sim/library';
 import { brusselator, brusselatorControl } from './studies-fixture';
 
 const withX = (x: string) => ({ ...brusselator, equations: { ...brusselator.equations, x } });
@@ -8,6 +9,9 @@ const ats = (x: string) => checkSystem(withX(x), brusselatorControl).map((p) => 
 describe('the check before a system is saved', () => {
   test('finds nothing to mend in a published system', () => {
     expect(checkSystem(brusselator, brusselatorControl)).toEqual([]);
+    for (const { id, model, control } of library) {
+      expect([id, checkSystem(model, control)]).toEqual([id, []]);
+    }
   });
 
   test('names the very equation, and every one of them', () => {

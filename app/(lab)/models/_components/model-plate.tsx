@@ -11,7 +11,7 @@ type PlateProps = { model: LibraryModel; predicted: PredictedHere | null; starta
 
 /** One published system: what it is, its equations, what is turned, where it comes from. */
 export function ModelPlate({ model: published, predicted, startable }: PlateProps) {
-  const { id, title, summary, source, perturbs, model, control } = published;
+  const { id, title, summary, source, provenance, perturbs, model, control } = published;
   const parameter = model.parameters.find((p) => p.symbol === control.symbol);
   const range = `${figure(control.from)} to ${withUnit(figure(control.to), parameter?.unit)}`;
   return (
@@ -30,7 +30,10 @@ export function ModelPlate({ model: published, predicted, startable }: PlateProp
         <dt className="text-caption text-ink2 tablet:pt-[3px]">Perturbs</dt>
         <dd>{perturbs}</dd>
         <dt className="text-caption text-ink2 tablet:pt-[3px]">Source</dt>
-        <dd>{citationOf(source)}</dd>
+        <dd>
+          {citationOf(source)}
+          <span className="block text-caption text-ink2">{provenance}</span>
+        </dd>
       </dl>
       {predicted ? (
         <div className="mt-4 border-t border-rule pt-3">

@@ -66,6 +66,9 @@ export default async function SystemPage({ params, searchParams }: Props) {
           <Plate title="Source">
             <p>{source.title}</p>
             <p className="mt-2 text-caption text-ink2">{source.citation}</p>
+            <p className="mt-2 text-caption text-ink2">
+              Version 1: {source.provenance} Later versions are the lab’s own.
+            </p>
           </Plate>
         ) : null}
         <Plate title="Versions">
