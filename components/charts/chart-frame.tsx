@@ -42,7 +42,7 @@ export function ChartFrame(props: FrameProps) {
       ref={ref}
       role="img"
       aria-label={alt}
-      className="w-full min-w-0 overflow-hidden font-mono"
+      className="w-full min-w-0 overflow-hidden font-mono print:[&_.recharts-wrapper]:max-w-full"
       style={{ height }}
     >
       <ComposedChart

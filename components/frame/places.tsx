@@ -86,7 +86,7 @@ function Place({ href, name, current }: { href: string; name: string; current: b
 
 function Person(props: PlacesProps) {
   const { waiting, waitingHref = '/today', name, role, accountHref = '/account' } = props;
-  const quiet = 'underline-offset-4 hover:underline';
+  const quiet = 'min-h-6 underline-offset-4 hover:underline';
   return (
     <div className="ml-auto flex min-w-0 items-center gap-4 text-body whitespace-nowrap tablet:gap-9">
       <Link href={waitingHref} className={clsx('text-ink2', quiet)}>

@@ -61,7 +61,7 @@ function Ring({ x, y, d, colour }: Part) {
   );
 }
 
-/** Dashes sit on the four corners and on the middle of each side: period half a side, half filled. */
+/** Dashes sit on the four corners and on the middle of each side: period half a side. */
 function Lozenge({ x, y, d, colour }: Part) {
   const h = 0.56 * d;
   const side = h * Math.SQRT2;
@@ -71,8 +71,8 @@ function Lozenge({ x, y, d, colour }: Part) {
       fill="none"
       stroke={colour}
       strokeWidth={Math.max(1, 0.12 * d)}
-      strokeDasharray={`${side / 4} ${side / 4}`}
-      strokeDashoffset={side / 8}
+      strokeDasharray={`${0.3 * side} ${0.2 * side}`}
+      strokeDashoffset={0.15 * side}
     />
   );
 }

@@ -11,7 +11,7 @@ export function TexturePattern({ id, state }: PatternProps) {
     case 'steady':
       return (
         <pattern {...frame} width={5} height={5}>
-          <path d="M0 3H5" stroke={colour} strokeWidth={1.2} />
+          <path d="M0 2.5H5" stroke={colour} strokeWidth={1.2} />
         </pattern>
       );
     case 'damped':
@@ -24,7 +24,7 @@ export function TexturePattern({ id, state }: PatternProps) {
       return (
         <pattern {...frame} width={16} height={6}>
           <path
-            d="M-1 3.6C0 3 0 3 0 3C2.9 0.4 5.1 0.4 8 3S13.1 5.6 16 3"
+            d="M0 3C2.9 0.4 5.1 0.4 8 3S13.1 5.6 16 3"
             fill="none"
             stroke={colour}
             strokeWidth={1.1}
