@@ -71,7 +71,11 @@ export function PredictionView(props: ViewProps) {
           unit={ribbon.unit}
           label={ribbon.label}
           timeUnit={model.timeUnit}
-          branch={answer.branch}
+          branch={{
+            control: answer.branch.control,
+            growthRate: answer.branch.growthRate,
+            stable: answer.branch.stable,
+          }}
           onsets={answer.onsets.map((o) => o.value)}
         />
       </Plate>

@@ -125,12 +125,18 @@ export function systemOf(draft: SystemDraft): ReadSystem {
   return { ok: true, model: parsedModel.data, control: parsedControl.data };
 }
 
-type Issue = { path: PropertyKey[]; message: string; code?: string };
+type Issue = { path: PropertyKey[]; message: string; code?: string; origin?: string };
+
+const TOO_SMALL: Record<string, string> = {
+  string: 'Fill this in',
+  number: 'This must be 0 or more',
+  array: 'At least one is needed',
+};
 
 const issues = (list: Issue[], root: string): FieldProblem[] =>
-  list.map(({ path, message, code }) => ({
+  list.map(({ path, message, code, origin }) => ({
     at: [root, ...path.map(String)].join('.'),
-    message: code === 'too_small' ? 'This must be filled in, and in its range' : sentence(message),
+    message: (code === 'too_small' && TOO_SMALL[origin ?? '']) || sentence(message),
   }));
 
 const sentence = (text: string) => `${text[0]?.toUpperCase() ?? ''}${text.slice(1)}`;
