@@ -7,7 +7,7 @@ describe('every lay-out keeps every hard rule, in two zones and across both cloc
   for (const place of PLACES) {
     it(`${place.timeZone} from ${place.notBefore}`, () => {
       let placed = 0;
-      for (let seed = 1; seed <= 120; seed++) {
+      for (let seed = 1; seed <= 60; seed++) {
         const asked = randomRequest(seed, place);
         const answer = layOut(asked);
         placed += answer.placements.length;
@@ -15,7 +15,7 @@ describe('every lay-out keeps every hard rule, in two zones and across both cloc
         for (const u of answer.unplaced) expect(u.reason.length).toBeGreaterThan(20);
       }
       // A planner that places nothing would keep every rule too.
-      expect(placed).toBeGreaterThan(300);
+      expect(placed).toBeGreaterThan(150);
     });
   }
 });

@@ -191,10 +191,12 @@ function checkDays(
     }
   }
   const rest = (person.minRestHours ?? 0) * 60 * MINUTE;
+  const planned = new Set(mine);
+  const began = new Map(all.map((c) => [c, dateOf(format, c.from)]));
   for (const a of all) {
     for (const b of all) {
-      if (!mine.includes(a) && !mine.includes(b)) continue;
-      const nextDay = dateOf(format, a.from) < dateOf(format, b.from);
+      if (!planned.has(a) && !planned.has(b)) continue;
+      const nextDay = began.get(a)! < began.get(b)!;
       if (rest > 0 && nextDay && b.from - a.to < rest - SLACK) {
         found.push(`${person.id}: rests only ${(b.from - a.to) / MINUTE} minutes`);
       }

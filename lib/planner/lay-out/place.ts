@@ -53,7 +53,7 @@ export function allowedRigs(state: State, job: Job): number[] {
 }
 
 /** Misses in one plan after which the search goes in large steps, so that its time stays bounded. */
-const TIRED = 50_000;
+const TIRED = 20_000;
 
 export function snapUp(t: number, notBefore: number): number {
   return notBefore + Math.ceil((t - notBefore) / GRID) * GRID;

@@ -114,6 +114,7 @@ function crowdedOut(problem: Problem, state: State, job: Job, bounds: Bounds): s
 export function diagnosis(request: LayOutRequest, state: State): (index: number) => string {
   const { problem } = state;
   const empty = new State(readProblem(request));
+  empty.misses = state.misses;
   return (index) => {
     const asked = problem.jobs[index]!;
     const early = waitsFor(state, asked) ?? lacksPeople(problem, asked);

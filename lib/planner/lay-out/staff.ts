@@ -2,8 +2,13 @@ import type { Job, Visit } from './problem';
 import type { Attendance, State } from './state';
 
 /** How the search breaks ties; the defaults take the least loaded person. */
-export type Taste = { noise: (person: number) => number };
-export const LEAST_LOADED: Taste = { noise: () => 0 };
+export type Taste = {
+  /** Added to the load of a person, or to the idle time of a rig, before comparing; ms. */
+  noise: (index: number) => number;
+  /** Whether whoever is there for a round already does the sister vessel as well. */
+  keepRounds: boolean;
+};
+export const LEAST_LOADED: Taste = { noise: () => 0, keepRounds: true };
 
 const TRIES = 40;
 const COMBINATIONS = 8;
@@ -44,8 +49,7 @@ function ranked(state: State, visit: Visit, from: number, able: number[], taste:
   const to = from + visit.duration;
   const key = (p: number) => {
     const book = state.problem.people[p]!;
-    // Whoever is in the room for this round already does the sister vessel as well.
-    const shared = book.sharesRound(from, to, visit.round) ? 0 : 1;
+    const shared = taste.keepRounds && book.sharesRound(from, to, visit.round) ? 0 : 1;
     return { p, shared, load: book.load + taste.noise(p) };
   };
   return able
