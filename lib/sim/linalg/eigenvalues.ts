@@ -229,24 +229,37 @@ function chase(
     const z = r / s;
     q /= p;
     r /= p;
-    for (let j = k; j <= end; j++) {
-      let t = a[k * n + j]! + q * a[(k + 1) * n + j]!;
-      if (three) {
-        t += r * a[(k + 2) * n + j]!;
-        a[(k + 2) * n + j] = a[(k + 2) * n + j]! - t * z;
-      }
-      a[(k + 1) * n + j] = a[(k + 1) * n + j]! - t * y;
-      a[k * n + j] = a[k * n + j]! - t * x;
+    reflect(a, n, k, l, end, three, [x, y, z, q, r]);
+  }
+}
+
+/** Applies one reflection from the left to columns k..end and from the right to rows l..k + 3. */
+function reflect(
+  a: Float64Array,
+  n: number,
+  k: number,
+  l: number,
+  end: number,
+  three: boolean,
+  [x, y, z, q, r]: readonly [number, number, number, number, number],
+): void {
+  for (let j = k; j <= end; j++) {
+    let t = a[k * n + j]! + q * a[(k + 1) * n + j]!;
+    if (three) {
+      t += r * a[(k + 2) * n + j]!;
+      a[(k + 2) * n + j] = a[(k + 2) * n + j]! - t * z;
     }
-    const last = Math.min(end, k + 3);
-    for (let i = l; i <= last; i++) {
-      let t = x * a[i * n + k]! + y * a[i * n + k + 1]!;
-      if (three) {
-        t += z * a[i * n + k + 2]!;
-        a[i * n + k + 2] = a[i * n + k + 2]! - t * r;
-      }
-      a[i * n + k + 1] = a[i * n + k + 1]! - t * q;
-      a[i * n + k] = a[i * n + k]! - t;
+    a[(k + 1) * n + j] = a[(k + 1) * n + j]! - t * y;
+    a[k * n + j] = a[k * n + j]! - t * x;
+  }
+  const last = Math.min(end, k + 3);
+  for (let i = l; i <= last; i++) {
+    let t = x * a[i * n + k]! + y * a[i * n + k + 1]!;
+    if (three) {
+      t += z * a[i * n + k + 2]!;
+      a[i * n + k + 2] = a[i * n + k + 2]! - t * r;
     }
+    a[i * n + k + 1] = a[i * n + k + 1]! - t * q;
+    a[i * n + k] = a[i * n + k]! - t;
   }
 }

@@ -17,7 +17,7 @@ export interface Lu {
 const scales = new Float64Array(1024);
 
 /** Factorises `a` (n × n) in place. Never throws; look at `outcome` before use. */
-export function luFactor(a: Float64Array, n: number, pivots = new Int32Array(n)): Lu {
+export function luFactor(a: Float64Array, n: number, pivots: Int32Array = new Int32Array(n)): Lu {
   const scale = n <= scales.length ? scales : new Float64Array(n);
   let smallest = Number.POSITIVE_INFINITY;
   for (let i = 0; i < n; i++) {

@@ -70,19 +70,7 @@ export function analysisNotes(analysis: Analysis): Note[] {
       text: `the steady state is unstable already at ${where(context.from)}, with ${first.unstable} unstable dimension${first.unstable > 1 ? 's' : ''}`,
     });
   }
-  for (const event of scan.events) {
-    if (event.kind === 'fold') {
-      notes.push({
-        code: 'fold',
-        text: `the branch of steady states turns round (fold) at ${where(refineEvent(context, event))}`,
-      });
-    } else if (event.kind === 'real-crossing') {
-      notes.push({
-        code: 'real-eigenvalue-crossing',
-        text: `a real eigenvalue crosses zero at ${where(refineEvent(context, event))}: the steady state changes stability without an oscillation`,
-      });
-    }
-  }
+  notes.push(...eventNotes(analysis, where));
   for (const control of neutralSaddles(analysis)) {
     notes.push({
       code: 'neutral-saddle',
@@ -101,6 +89,25 @@ export function analysisNotes(analysis: Analysis): Note[] {
       code: 'no-onset',
       text: `no onset of oscillation between ${where(context.from)} and ${Number(context.to.toPrecision(6))} on this branch`,
     });
+  }
+  return notes;
+}
+
+/** Folds and real crossings, each refined. */
+function eventNotes({ scan, context }: Analysis, where: (v: number) => string): Note[] {
+  const notes: Note[] = [];
+  for (const event of scan.events) {
+    if (event.kind === 'fold') {
+      notes.push({
+        code: 'fold',
+        text: `the branch of steady states turns round (fold) at ${where(refineEvent(context, event))}`,
+      });
+    } else if (event.kind === 'real-crossing') {
+      notes.push({
+        code: 'real-eigenvalue-crossing',
+        text: `a real eigenvalue crosses zero at ${where(refineEvent(context, event))}: the steady state changes stability without an oscillation`,
+      });
+    }
   }
   return notes;
 }

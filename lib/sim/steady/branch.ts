@@ -29,8 +29,7 @@ export function followBranch(
   cancelled?: () => boolean,
 ): FollowedBranch | null {
   const { from, to, width } = context;
-  const zero = new Float64Array(x0.length);
-  const first = makeNode(context, x0, from, zero, width);
+  const first = makeNode(context, x0, from, new Float64Array(x0.length), width);
   if (!first) return null;
   const nodes = [first];
   const notes: Note[] = [];
@@ -61,11 +60,7 @@ export function followBranch(
         h = step.h / 4;
         continue;
       }
-      const symbol = context.problem.system.variables[negative]!;
-      notes.push({
-        code: 'left-physical-range',
-        text: `the steady state leaves the physical range at ${context.problem.system.parameters[context.problem.controlIndex]} = ${last.control.toPrecision(6)}: ${symbol} would turn negative; nothing beyond is predicted on this branch`,
-      });
+      notes.push(leftRange(context, last, negative));
       return { nodes, notes, end: 'physical' };
     }
     nodes.push(node);
@@ -77,6 +72,14 @@ export function followBranch(
     text: `the steady state could be followed only as far as ${last.control.toPrecision(6)}`,
   });
   return { nodes, notes, end: 'incomplete' };
+}
+
+function leftRange({ problem }: BranchContext, last: Node, variable: number): Note {
+  const control = problem.system.parameters[problem.controlIndex];
+  return {
+    code: 'left-physical-range',
+    text: `the steady state leaves the physical range at ${control} = ${Number(last.control.toPrecision(6))}: ${problem.system.variables[variable]} would turn negative; nothing beyond is predicted on this branch`,
+  };
 }
 
 type Step =

@@ -95,41 +95,17 @@ function rosenbrockStep(
   scale: Float64Array,
   h0: number,
 ): Step {
-  const n = problem.n;
   let h = h0;
   if (!problem.linearise(x, control)) return { outcome: 'failed' };
   const jac = Float64Array.from(problem.total);
   const f0 = Float64Array.from(problem.f);
   for (let attempt = 0; attempt < 40; attempt++) {
-    const w = jac.map((v) => -h * GAMMA * v);
-    for (let i = 0; i < n; i++) w[i * n + i] = w[i * n + i]! + 1;
-    const lu = luFactor(w, n);
-    if (lu.outcome === 'singular') {
+    const tried = attemptStep(problem, x, control, scale, h, jac, f0);
+    if (!tried) {
       h /= 3;
       continue;
     }
-    const k1 = Float64Array.from(f0);
-    luSolve(lu, k1);
-    if (!problem.residual(add(x, k1, h / 2), control)) {
-      h /= 3;
-      continue;
-    }
-    const f1 = Float64Array.from(problem.f);
-    const k2 = f1.map((v, i) => v - k1[i]!);
-    luSolve(lu, k2);
-    for (let i = 0; i < n; i++) k2[i] = k2[i]! + k1[i]!;
-    const next = add(x, k2, h);
-    if (!problem.residual(next, control)) {
-      h /= 3;
-      continue;
-    }
-    const e = 6 + Math.SQRT2;
-    const k3 = problem.f.map((v, i) => v - e * (k2[i]! - f1[i]!) - 2 * (k1[i]! - f0[i]!));
-    luSolve(lu, k3);
-    const error = scaledSize(
-      k1.map((v, i) => (h / 6) * (v - 2 * k2[i]! + k3[i]!)),
-      scale,
-    );
+    const { next, error } = tried;
     if (error > 1e-3) {
       h *= Math.max(0.2, 0.8 * (1e-3 / error) ** (1 / 3));
       continue;
@@ -138,6 +114,37 @@ function rosenbrockStep(
     return { outcome: 'ok', h, next: h * Math.min(5, 0.8 * (1e-3 / (error || 1e-12)) ** (1 / 3)) };
   }
   return { outcome: 'failed' };
+}
+
+/** The three stages with step h, and the scaled error; null where f is not finite on the way. */
+function attemptStep(
+  problem: Problem,
+  x: Float64Array,
+  control: number,
+  scale: Float64Array,
+  h: number,
+  jac: Float64Array,
+  f0: Float64Array,
+): { next: Float64Array; error: number } | null {
+  const n = problem.n;
+  const w = jac.map((v) => -h * GAMMA * v);
+  for (let i = 0; i < n; i++) w[i * n + i] = w[i * n + i]! + 1;
+  const lu = luFactor(w, n);
+  if (lu.outcome === 'singular') return null;
+  const k1 = Float64Array.from(f0);
+  luSolve(lu, k1);
+  if (!problem.residual(add(x, k1, h / 2), control)) return null;
+  const f1 = Float64Array.from(problem.f);
+  const k2 = f1.map((v, i) => v - k1[i]!);
+  luSolve(lu, k2);
+  for (let i = 0; i < n; i++) k2[i] = k2[i]! + k1[i]!;
+  const next = add(x, k2, h);
+  if (!problem.residual(next, control)) return null;
+  const e = 6 + Math.SQRT2;
+  const k3 = problem.f.map((v, i) => v - e * (k2[i]! - f1[i]!) - 2 * (k1[i]! - f0[i]!));
+  luSolve(lu, k3);
+  const gap = k1.map((v, i) => (h / 6) * (v - 2 * k2[i]! + k3[i]!));
+  return { next, error: scaledSize(gap, scale) };
 }
 
 function add(x: Float64Array, v: Float64Array, h: number): Float64Array {
