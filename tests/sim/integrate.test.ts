@@ -61,6 +61,32 @@ describe('courses without delay against exact solutions', () => {
     expect(worst(times, readouts.a!, exact)).toBeLessThan(1e-8);
   });
 
+  it('a rate of 1e6 beside a rate of 1, by implicit steps', () => {
+    const m = model({ a: '-k*(a - cos(b))', b: '1', c: 'a' }, {}, { k: 1e6 });
+    const { times, readouts } = run(m, 20, 0.1);
+    const exact = (t: number) => Math.cos(t) + 1e-6 * Math.sin(t);
+    const late = times.slice(1);
+    expect(worst(late, readouts.a!.slice(1), exact)).toBeLessThan(1e-8);
+    expect(worst(times, readouts.c!, Math.sin)).toBeLessThan(2e-6);
+    const system = compileModel(m);
+    const course = new Course(system, system.values, system.start, { maxSteps: 20_000 });
+    // The explicit pair alone would need 20 · 1e6/3.3 steps.
+    expect(course.advance(20).outcome).toBe('reached');
+  });
+
+  it('the stiff chemical test problem of Robertson at t = 40', () => {
+    // 7.158270e-01, 9.185535e-06, 2.841638e-01: the example output in the CVODE manual (from memory);
+    // the problem is Robertson 1966, as in Hairer & Wanner 1996, IV.10.
+    const m = model(
+      { a: '-0.04*a + 1e4*b*c', b: '0.04*a - 1e4*b*c - 3e7*b^2', c: '3e7*b^2' },
+      { a: 1 },
+    );
+    const { readouts } = run(m, 40, 40);
+    expect(readouts.a![1]).toBeCloseTo(0.715827, 6);
+    expect(readouts.b![1]! * 1e6).toBeCloseTo(9.185535, 5);
+    expect(readouts.c![1]).toBeCloseTo(0.2841638, 6);
+  });
+
   it('conserves the energy of a pendulum with large swings', () => {
     const { readouts } = run(model({ x: 'v', v: '-sin(x)' }, { x: 2.5 }), 200, 1);
     readouts.x!.forEach((x, i) => {
@@ -185,7 +211,7 @@ describe('what a course reports', () => {
   });
 
   it('stops after its allowance of steps instead of running on', () => {
-    const system = compileModel(model({ x: '-1e9*(x - cos(y))', y: '1' }, {}));
+    const system = compileModel(model({ x: '-1e9*x(t - s)', y: '1' }, { x: 1 }, { s: 1e-10 }));
     const course = new Course(system, system.values, system.start, { maxSteps: 1000 });
     expect(course.advance(1e3).outcome).toBe('too-many-steps');
   });

@@ -1,6 +1,9 @@
 import type { CompiledSystem } from '../equations/types';
 import { breakPoints } from './break-points';
+import { finite, runaway } from './finite';
 import { History, quartic } from './history';
+import type { RosenbrockStep } from './rosenbrock';
+import { Stiffness } from './stiffness';
 import { extension, NODES, type Slopes, stageState, stepError } from './tableau';
 
 export type Advance =
@@ -25,7 +28,6 @@ export interface CourseOptions {
   readonly maxStep?: number;
 }
 
-const LARGEST = 1e120;
 const FLOOR = 1e-3;
 const ORDER = 5;
 const MAX_ITERATIONS = 12;
@@ -55,6 +57,9 @@ export class Course {
   private inside = false;
   private stepFrom = 0;
   private stepLength = 0;
+  /** The state of the last slope but one, to judge stiffness from. */
+  private readonly near: Float64Array;
+  private readonly stiffness: Stiffness;
 
   constructor(
     private readonly system: CompiledSystem,
@@ -78,9 +83,15 @@ export class Course {
     const slope = () => new Float64Array(n);
     this.k = [slope(), slope(), slope(), slope(), slope(), slope(), slope()];
     this.next = new Float64Array(n);
+    this.near = new Float64Array(n);
+    this.stiffness = new Stiffness(system, p);
     this.c = new Float64Array(5 * n);
     this.size = this.x.map(Math.abs);
     this.slope(this.history.end, this.x, this.k[0]);
+  }
+
+  private get order(): number {
+    return this.stiffness.method ? ORDER - 1 : ORDER;
   }
 
   get time(): number {
@@ -147,7 +158,8 @@ export class Course {
         this.accept(h, end, error);
         return null;
       }
-      this.h = h * (Number.isFinite(error) ? Math.max(0.2, 0.9 * error ** (-1 / ORDER)) : 0.25);
+      this.h =
+        h * (Number.isFinite(error) ? Math.max(0.2, 0.9 * error ** (-1 / this.order)) : 0.25);
     }
   }
 
@@ -167,6 +179,7 @@ export class Course {
   /** Tries a step; returns its error over the tolerance, infinite where it cannot be evaluated. */
   private attempt(h: number): number {
     this.stepLength = h;
+    if (this.stiffness.method) return this.implicitStep(this.stiffness.method, h);
     this.inside = h > this.shortest;
     if (!this.inside) return this.stages(h);
     this.guess(h);
@@ -180,6 +193,18 @@ export class Course {
       if (change < 0.1) return error;
     }
     return Number.POSITIVE_INFINITY;
+  }
+
+  private implicitStep(method: RosenbrockStep, h: number): number {
+    const end = this.time + h;
+    const slope = (y: Float64Array, out: Float64Array) => this.slope(end, y, out);
+    if (!method.take(this.x, h, this.next, slope)) return Number.POSITIVE_INFINITY;
+    if (!this.slope(end, this.next, this.k[6])) return Number.POSITIVE_INFINITY;
+    let worst = 0;
+    for (let i = 0; i < this.next.length; i += 1) {
+      worst = Math.max(worst, Math.abs(method.error[i]!) / this.weight(i, h));
+    }
+    return Number.isNaN(worst) ? Number.POSITIVE_INFINITY : worst;
   }
 
   /** A first idea of the course inside the step: straight on. */
@@ -197,6 +222,7 @@ export class Course {
     const { k, next, x } = this;
     for (let s = 1; s < 7; s += 1) {
       stageState(s, x, h, k, next);
+      if (s === 5) this.near.set(next);
       if (!this.slope(this.time + NODES[s]! * h, next, k[s]!)) return Number.POSITIVE_INFINITY;
     }
     let worst = 0;
@@ -227,6 +253,12 @@ export class Course {
 
   private accept(h: number, end: number, error: number): void {
     extension(this.x, this.next, h, this.k, this.c);
+    const { k, next, near } = this;
+    if (this.stiffness.method) {
+      // Stiff steps are joined by a cubic: the quartic term belongs to the explicit pair.
+      this.c.fill(0, 4 * this.x.length);
+      this.stiffness.implicit(h);
+    } else this.stiffness.explicit(h, [k[6], k[5]], [next, near], (i) => this.weight(i, h));
     this.stepFrom = this.time;
     this.history.append(this.time, h, end, this.c);
     this.history.forget(this.time - this.longest - 2 * h);
@@ -238,7 +270,7 @@ export class Course {
     const jump = this.breaks.length > 0 && this.breaks[0] === end;
     if (jump) this.slope(end, this.x, this.k[0]);
     else this.k[0].set(this.k[6]);
-    const growth = Math.min(5, 0.9 * Math.max(error, 1e-10) ** (-1 / ORDER));
+    const growth = Math.min(5, 0.9 * Math.max(error, 1e-10) ** (-1 / this.order));
     // A step that was cut to meet a barrier says little about the next one.
     this.h = Math.max(h * growth, growth >= 1 ? Math.min(this.h, 5 * h) : 0);
   }
@@ -255,21 +287,6 @@ export class Course {
   }
 
   private escape(): Advance {
-    let variable = 0;
-    let worst = -1;
-    for (let i = 0; i < this.x.length; i += 1) {
-      const speed = Math.abs(this.k[0][i]!) / (Math.abs(this.x[i]!) + 1e-300);
-      const score = Math.abs(this.x[i]!) > LARGEST ? Number.POSITIVE_INFINITY : speed;
-      if (!(score <= worst)) {
-        worst = score;
-        variable = i;
-      }
-    }
-    return { outcome: 'escaped', time: this.time, variable };
+    return { outcome: 'escaped', time: this.time, variable: runaway(this.x, this.k[0]) };
   }
-}
-
-function finite(list: Float64Array): boolean {
-  for (let i = 0; i < list.length; i += 1) if (!(Math.abs(list[i]!) <= LARGEST)) return false;
-  return true;
 }
