@@ -1,4 +1,3 @@
-import { balance } from '../linalg/balance';
 import { eigenvalues } from '../linalg/eigenvalues';
 import { type Characteristic, polishRoot } from './characteristic';
 import type { Problem } from './problem';
@@ -9,20 +8,19 @@ import type { Root } from './spectrum';
  *
  * The infinitesimal generator is collocated on Chebyshev points of [−τ_max, 0] (Breda, Maset &
  * Vermiglio 2005): its eigenvalues *find* the roots; Newton on the characteristic equation *polishes*
- * each one. Every root with nonnegative real part lies within |λ| ≤ ‖A‖ + Σ‖B_k‖ (norms after
- * balancing), which sets the first order; the order is then raised until each leading root has a
- * polished root of its own close by. Outcome 'uncertain' when the cap is reached before that.
+ * each one. A bound on the size of the unstable roots sets the first order, half a point a radian and eight
+ * more; the order is then raised until each leading root has a polished root of its own close by. Outcome 'uncertain' when the cap is reached before that.
  */
 export function delayRoots(
   problem: Problem,
   work: Characteristic,
   scale: Float64Array,
 ): { outcome: 'ok' | 'uncertain'; roots: Root[]; norm: number } {
-  const norm = balancedNorm(problem);
+  const { bound, norm } = rootBound(problem);
   const longest = Math.max(...problem.tau);
-  const reach = norm * longest;
+  const reach = bound * longest;
   const cap = Math.max(16, Math.min(160, Math.floor(480 / problem.n)));
-  let order = Math.min(cap, Math.ceil(0.55 * reach) + 10);
+  let order = Math.min(cap, Math.ceil(0.5 * reach) + 8);
   for (;;) {
     const found = collocated(problem, order, longest);
     if (found) {
@@ -35,31 +33,47 @@ export function delayRoots(
   }
 }
 
-/** ∞-norm sum after a common balancing of |A| + Σ|B_k|: a bound on any unstable root's size. */
-function balancedNorm(problem: Problem): number {
+/**
+ * A bound on the size of every root with nonnegative real part, and the size of the linearisation.
+ *
+ * For Re λ ≥ 0 and a_ii < 0, |λ| ≤ |λ − a_ii|; Gershgorin's discs in Perron's scaling then give
+ * |λ| ≤ ρ(M), M_ij = |a_ij| + Σ|b_k,ij| with negative a_ii left out. ρ is bounded from above by the
+ * largest quotient (Mv)_i / v_i of power iterates (Collatz 1942).
+ */
+function rootBound(problem: Problem): { bound: number; norm: number } {
   const { n, K, jac } = problem;
   const width = n * (K + 1);
-  const sum = new Float64Array(n * n);
+  const m = new Float64Array(n * n);
+  let diagonal = 0;
   for (let i = 0; i < n; i++) {
     for (let k = 0; k <= K; k++) {
-      for (let j = 0; j < n; j++)
-        sum[i * n + j] = sum[i * n + j]! + Math.abs(jac[i * width + k * n + j]!);
+      for (let j = 0; j < n; j++) {
+        const v = jac[i * width + k * n + j]!;
+        if (k === 0 && i === j) diagonal = Math.max(diagonal, Math.abs(v));
+        m[i * n + j] = m[i * n + j]! + (k === 0 && i === j ? Math.max(v, 0) : Math.abs(v));
+      }
     }
   }
-  balance(sum, n);
-  let rows = 0;
-  let columns = 0;
-  for (let i = 0; i < n; i++) {
-    let row = 0;
-    let column = 0;
-    for (let j = 0; j < n; j++) {
-      row += sum[i * n + j]!;
-      column += sum[j * n + i]!;
+  let v = new Float64Array(n).fill(1);
+  let bound = Number.POSITIVE_INFINITY;
+  for (let pass = 0; pass < 40; pass++) {
+    const next = new Float64Array(n);
+    let ratio = 0;
+    let largest = 0;
+    for (let i = 0; i < n; i++) {
+      for (let j = 0; j < n; j++) next[i] = next[i]! + m[i * n + j]! * v[j]!;
+      ratio = Math.max(ratio, next[i]! / v[i]!);
     }
-    rows = Math.max(rows, row);
-    columns = Math.max(columns, column);
+    bound = Math.min(bound, ratio);
+    // The mean with the iterate before damps the turning of a cyclic matrix.
+    for (let i = 0; i < n; i++) {
+      next[i] = next[i]! + ratio * v[i]!;
+      largest = Math.max(largest, next[i]!);
+    }
+    if (!(largest > 0)) break;
+    v = next.map((x) => Math.max(x / largest, 1e-8));
   }
-  return Math.min(rows, columns);
+  return { bound, norm: Math.max(bound, diagonal) };
 }
 
 interface Mesh {
