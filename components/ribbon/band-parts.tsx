@@ -41,9 +41,10 @@ export function BandAndComb({ data, size, dim, x, width, id }: PartProps) {
   const [top, bottom] = dim.zone;
   const weight = size === 'list' ? 1 : 0.55;
   const fade = data.stale ? STALE : 1;
-  const inside = (at: number) => at >= 0 && at <= width;
+  const inside = (at: number) => at >= dim.pad && at <= width - dim.pad;
   return data.onsets.map((onset, i) => {
     const [from, to] = [x(onset.low), x(onset.high)];
+    const [left, right] = [Math.max(from, dim.pad), Math.min(to, width - dim.pad)];
     const key = `${id}-band-${i}`;
     const comb = size === 'list' ? [] : combValues(onset, size === 'page' ? 'all' : 9);
     const lines = comb.map(x).filter(inside);
@@ -60,9 +61,9 @@ export function BandAndComb({ data, size, dim, x, width, id }: PartProps) {
           ))}
         </linearGradient>
         <rect
-          x={from}
+          x={left}
           y={top}
-          width={Math.max(to - from, 0)}
+          width={Math.max(right - left, 0)}
           height={bottom - top}
           fill={`url(#${key})`}
         />
@@ -86,11 +87,7 @@ export function Wave({ data, dim, x, width, id, wave }: PartProps & { wave: Wave
     <g fill="none" opacity={data.stale ? STALE : 1} strokeLinejoin="round">
       <linearGradient id={key} gradientUnits="userSpaceOnUse" x1={0} x2={width} y1={0} y2={0}>
         {stops.map((stop) => (
-          <stop
-            key={`${stop.value} ${stop.token}`}
-            offset={share(stop.value)}
-            stopColor={`var(--${stop.token})`}
-          />
+          <stop key={stop.key} offset={share(stop.value)} stopColor={`var(--${stop.token})`} />
         ))}
       </linearGradient>
       {wave.behind.map((d) => (

@@ -34,14 +34,22 @@ export function bandStops(
 /** Colours of the line along the scale: it turns from steady to sustained from low to high. */
 export function lineStops(
   onsets: readonly PredictedOnset[],
-): { value: number; token: 'steady' | 'sustained' }[] {
+): { key: string; value: number; token: 'steady' | 'sustained' }[] {
   return [...onsets]
     .sort((a, b) => a.value - b.value)
-    .flatMap((onset) => {
+    .flatMap((onset, i) => {
       const rising = onset.oscillates === 'above';
       return [
-        { value: onset.low, token: rising ? ('steady' as const) : ('sustained' as const) },
-        { value: onset.high, token: rising ? ('sustained' as const) : ('steady' as const) },
+        {
+          key: `low ${i}`,
+          value: onset.low,
+          token: rising ? ('steady' as const) : ('sustained' as const),
+        },
+        {
+          key: `high ${i}`,
+          value: onset.high,
+          token: rising ? ('sustained' as const) : ('steady' as const),
+        },
       ];
     });
 }

@@ -1,6 +1,6 @@
-import { decimalsFor, fineDecimalsFor, fixed, intervalText, unitText } from '@/lib/format';
+import { decimalsFor, fineDecimalsFor, intervalText, unitText } from '@/lib/format';
 import { type Dimensions, monoWidth } from './dimensions';
-import { ticksOf } from './scale';
+import { ticksOf, tickText } from './scale';
 import type { ObservedOnset, PredictedOnset, RibbonData, RibbonSize } from './types';
 
 export type Text = {
@@ -39,18 +39,42 @@ export function observedFigures(onset: ObservedOnset): string {
   return intervalText(onset, { decimals: Math.max(0, decimalsFor(half)) });
 }
 
-/** Takes the first candidate that lies within the ribbon and clear of the texts already set. */
-function settle(candidates: Text[], taken: Box[], dim: Dimensions, width: number): Text | null {
-  for (const text of candidates) {
-    const box = boxOf(text, dim.font.label);
-    const inside = box.from >= dim.pad - 0.5 && box.to <= width - dim.pad + 0.5;
-    if (inside && !taken.some((other) => overlaps(box, other, 8))) {
-      taken.push(box);
-      return text;
-    }
-  }
-  return null;
+type Room = { taken: Box[]; dim: Dimensions; width: number };
+
+function fits(text: Text, others: Box[], { dim, width }: Room): boolean {
+  const box = boxOf(text, dim.font.label);
+  const inside = box.from >= dim.pad - 0.5 && box.to <= width - dim.pad + 0.5;
+  return inside && !others.some((other) => overlaps(box, other, 8));
 }
+
+/** Bound of the search below; a ribbon has a handful of pointers with a dozen candidates each. */
+const MOST_TRIALS = 5000;
+
+/**
+ * One candidate for each pointer so that as many as possible are shown, none over another; earlier
+ * candidates and earlier pointers are preferred.
+ */
+function settleAll(candidates: Text[][], room: Room): Text[] {
+  let best: Text[] = [];
+  let trials = 0;
+  const search = (i: number, chosen: Text[], boxes: Box[]): boolean => {
+    if (chosen.length > best.length) best = chosen;
+    const options = candidates[i];
+    if (!options) return best.length === candidates.length;
+    for (const text of options) {
+      if (++trials > MOST_TRIALS) return true;
+      if (!fits(text, boxes, room)) continue;
+      if (search(i + 1, [...chosen, text], [...boxes, boxOf(text, room.dim.font.label)]))
+        return true;
+    }
+    return search(i + 1, chosen, boxes);
+  };
+  search(0, [], room.taken);
+  return best;
+}
+
+/** Half the width of a predicted pointer on the page, px. */
+const POINTER = 5.4;
 
 function predictedBeside(
   data: RibbonData,
@@ -62,18 +86,19 @@ function predictedBeside(
   const y = dim.upperText;
   const unit = unitText(data.unit);
   const stale = data.stale ? `, from ${data.stale}` : '';
-  const taken: Box[] = [];
-  return data.onsets.flatMap((onset, i) => {
+  const pointers = data.onsets.map((onset) => x(onset.value));
+  const taken = pointers.map((at) => ({ from: at - POINTER + 6, to: at + POINTER - 6 }));
+  const candidates = data.onsets.map((onset, i) => {
     const figures = predictedFigures(onset, 'page');
     const full = `${i === 0 ? 'predicted ' : ''}${figures} ${unit}${i === 0 ? stale : ''}`.trim();
     const at = x(onset.value);
     const brief = figures.split(' ')[0] ?? figures;
-    const candidates = [full, figures, brief].flatMap((text): Text[] => [
+    return [full, figures, brief].flatMap((text): Text[] => [
       { text, x: at + 10.5, y, anchor: 'start', kind: 'predicted' },
       { text, x: at - 10.5, y, anchor: 'end', kind: 'predicted' },
     ]);
-    return settle(candidates, taken, dim, width) ?? [];
   });
+  return settleAll(candidates, { taken, dim, width });
 }
 
 /** Text centred under a pointer, moved sideways where it would leave the ribbon. */
@@ -102,45 +127,49 @@ function underPointers(
   size: RibbonSize,
 ): Text[] {
   const unit = unitText(data.unit);
-  const taken: Box[] = [];
-  const texts = data.observed.flatMap((onset, i) => {
+  const observed = data.observed.map((onset, i) => {
     const figures = observedFigures(onset);
     const full = size === 'page' ? `${figures} ${unit}` : figures;
     const named = size === 'page' && i === 0 ? [`observed ${full}`] : [];
     const brief = figures.split(' ')[0] ?? figures;
-    const texts = [...named, full, figures, brief];
-    const candidates = texts.flatMap((text) =>
+    const at = x(onset.value);
+    return [...named, full, figures, brief].flatMap((text) =>
       size === 'page'
-        ? beneath(text, x(onset.value), dim, width)
-        : beside(text, x(onset.value), dim),
+        ? [beneath(text, at, dim, width), ...aside(text, at, dim)]
+        : beside(text, at, dim),
     );
-    return settle(candidates, taken, dim, width) ?? [];
   });
-  if (size !== 'card') return texts;
-  const predicted = data.onsets.flatMap((onset, i) => {
+  if (size !== 'card') return settleAll(observed, { taken: [], dim, width });
+  const predicted = data.onsets.map((onset, i) => {
     const figures = predictedFigures(onset, size);
     const stale = data.stale && i === 0 ? [`${figures}, from ${data.stale}`] : [];
     const brief = figures.split(' ')[0] ?? figures;
-    const candidates = [...stale, figures, brief].map((text) => ({
+    return [...stale, figures, brief].map((text) => ({
       ...beneath(text, x(onset.value), dim, width),
       kind: 'predicted' as const,
     }));
-    return settle(candidates, taken, dim, width) ?? [];
   });
-  return [...texts, ...predicted];
+  return settleAll([...observed, ...predicted], { taken: [], dim, width });
+}
+
+/** Beneath a pointer, but reaching to one side of it, where another label needs the other. */
+function aside(text: string, at: number, dim: Dimensions): Text[] {
+  const common = { text, y: dim.lowerText ?? 0, kind: 'observed' as const };
+  return [
+    { ...common, x: at + 4, anchor: 'end' },
+    { ...common, x: at - 4, anchor: 'start' },
+  ];
 }
 
 function numerals(data: RibbonData, dim: Dimensions, width: number, size: RibbonSize): Text[] {
   const y = dim.lowerText ?? 0;
   const ticks = ticksOf(data.from, data.to, width, dim.pad);
-  const step = (data.to - data.from) / 100;
-  const end = (v: number) => (v === 0 ? '0' : fixed(v, Math.max(0, decimalsFor(step * 2))));
-  const tidy = (text: string) => (text.includes('.') ? text.replace(/\.?0+$/, '') : text);
+  const end = (v: number) => tickText(v, Math.max(0, decimalsFor((data.to - data.from) / 50)));
   const unit = unitText(data.unit);
   const texts: Text[] = [
-    { text: tidy(end(data.from)), x: dim.pad, y, anchor: 'start', kind: 'numeral' },
+    { text: end(data.from), x: dim.pad, y, anchor: 'start', kind: 'numeral' },
     {
-      text: `${tidy(end(data.to))} ${unit}`.trim(),
+      text: `${end(data.to)} ${unit}`.trim(),
       x: width - dim.pad,
       y,
       anchor: 'end',

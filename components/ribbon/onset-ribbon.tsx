@@ -16,7 +16,7 @@ function FittedRibbon({ width, ...props }: RibbonDrawingProps) {
   const dim = DIMENSIONS[props.size];
   const [ref, measured] = useWidth<HTMLDivElement>(width ?? dim.width);
   return (
-    <div ref={ref} className="w-full min-w-0 overflow-hidden" style={{ height: dim.height }}>
+    <div ref={ref} className="w-full min-w-0 overflow-x-clip" style={{ height: dim.height }}>
       <RibbonDrawing {...props} width={measured} />
     </div>
   );

@@ -40,7 +40,7 @@ export function RibbonDrawing({
       viewBox={`0 0 ${w} ${dim.height}`}
       role="img"
       aria-label={ribbonSentence(data)}
-      className="block max-w-full font-mono"
+      className="block max-w-full overflow-visible font-mono"
     >
       <Hatch id={`${id}-hatch`} />
       {size === 'list' ? null : <Envelopes paths={wave.envelopes} />}

@@ -1,4 +1,4 @@
-import { decimalsOfStep, fixed } from '@/lib/format';
+import { decimalsOfStep, figure, fixed } from '@/lib/format';
 
 /** Position along the ribbon, px: pad + (v − from)/(to − from)·(width − 2·pad). */
 export function scaleX(
@@ -22,7 +22,9 @@ export function niceStep(least: number): number {
 }
 
 /** A numeral of a scale, without trailing zeros: "0.8", "1", "1.2". */
-function tickText(value: number, decimals: number): string {
+export function tickText(value: number, decimals: number): string {
+  if (value === 0) return '0';
+  if (decimals > 4 || Math.abs(value) >= 1e6) return figure(value, 4);
   const text = fixed(value, decimals);
   return text.includes('.') ? text.replace(/\.?0+$/, '') : text;
 }

@@ -53,10 +53,15 @@ export function superscript(text: string): string {
   return [...text].map((c) => SUPERSCRIPT[c] ?? c).join('');
 }
 
+/** "×10⁻⁶" */
+export function powerOfTen(exponent: number): string {
+  return `\u00d710${superscript(String(exponent))}`;
+}
+
 function scientific(value: number, significant: number): string {
   const [mantissa = '', exponent = '0'] = value.toExponential(significant - 1).split('e');
   const shown = mantissa.includes('.') ? mantissa.replace(/\.?0+$/, '') : mantissa;
-  return `${shown.replace('-', MINUS)}\u00d710${superscript(String(Number(exponent)))}`;
+  return shown.replace('-', MINUS) + powerOfTen(Number(exponent));
 }
 
 /**

@@ -75,6 +75,9 @@ describe('intervals', () => {
     expect(intervalText({ value: -0.06, low: -0.151, high: 0.03 })).toBe(
       '\u22120.06 (\u22120.15 to 0.03)',
     );
+    expect(intervalText({ value: 1e-6, low: 0.2e-6, high: 4e-6 }, { unit: 'mol/L' })).toBe(
+      `1.0 (0.2\u20134.0)\u00d710\u207b\u2076${NNBSP}mol/L`,
+    );
     expect(intervalText({ value: 0.48, low: 0.32, high: 0.64 }, { unit: '/d' })).toBe(
       `0.48 (0.32\u20130.64)${NNBSP}/d`,
     );

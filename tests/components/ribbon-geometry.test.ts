@@ -131,7 +131,7 @@ describe('band', () => {
     expect(bandStops(lower).map((s) => s.opacity)).toEqual([0, 0.09, 0.2, 0.09, 0]);
   });
   test('the line turns to sustained on the side that oscillates', () => {
-    expect(lineStops([upper, lower]).map((s) => s.token)).toEqual([
+    expect(lineStops([upper, lower]).map((stop) => stop.token)).toEqual([
       'steady',
       'sustained',
       'sustained',
@@ -207,6 +207,17 @@ describe('texts', () => {
         expect(boxes[i]!.from).toBeGreaterThanOrEqual(boxes[i - 1]!.to);
       for (const box of boxes) expect(box.to).toBeLessThanOrEqual(width);
     }
+  });
+  test('two close pointers both keep their figures, and no label lies on a pointer', () => {
+    const close = [
+      { value: 0.5, low: 0.48, high: 0.52, oscillates: 'above' as const },
+      { value: 0.55, low: 0.53, high: 0.57, oscillates: 'below' as const },
+    ];
+    const shown = texts({ onsets: close, observed: close.map(({ oscillates: _, ...o }) => o) });
+    expect(shown.filter((t) => t.kind === 'predicted')).toHaveLength(2);
+    expect(shown.filter((t) => t.kind === 'observed')).toHaveLength(2);
+    const [first] = shown.filter((t) => t.kind === 'predicted');
+    expect(first!.anchor).toBe('end');
   });
   test('without an onset there are words', () => {
     expect(texts({ onsets: [] }).map((t) => t.text)).toContain('no onset predicted in this range');
