@@ -3,6 +3,7 @@ import {
   boundaryRequest,
   designRequest,
   EngineError,
+  estimateRequest,
   judgeRequest,
   layOutRequest,
   predictRequest,
@@ -46,6 +47,10 @@ const VERBS: Readonly<Record<string, Verb>> = {
     async () => (await import('@/lib/planner/lay-out/lay-out')).layOut,
   ),
   judge: verb(judgeRequest, async () => (await import('@/lib/evidence/judge/judge')).judge),
+  estimate: verb(
+    estimateRequest,
+    async () => (await import('@/lib/evidence/estimate/estimate')).estimate,
+  ),
 };
 
 type Issue = z.core.$ZodIssue;
