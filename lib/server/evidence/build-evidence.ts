@@ -1,82 +1,59 @@
+import { and, eq, inArray } from 'drizzle-orm';
 import type { Conn } from '@/db/client';
 import { latestPrediction } from '@/db/queries/predictions';
-import {
-  readingsOfRun,
-  runsWithReadings,
-  standingVerdict,
-  verdictsOfRuns,
-} from '@/db/queries/readings';
-import type { JudgeAnswer, JudgeRequest, PredictAnswer } from '@/lib/contracts';
-import { minutesPerUnit } from '@/lib/planner/cadence/time-unit';
+import { runsWithReadings, standingVerdict, verdictsOfRuns } from '@/db/queries/readings';
+import { level } from '@/db/schema';
+import type { JudgeAnswer } from '@/lib/contracts';
 import { doseToControl } from '@/lib/sim/dose-map';
 import type { EvidencePlan, EvidenceRun } from './plan';
+import { pointsEach, recordToJudge } from './record-to-judge';
 
 type Of = { labId: string; studyId: string };
 type Run = Awaited<ReturnType<typeof runsWithReadings>>[number];
 type Prediction = NonNullable<Awaited<ReturnType<typeof latestPrediction>>>;
+type Verdicts = Awaited<ReturnType<typeof verdictsOfRuns>>;
 
 const COUNTED = new Set(['settling', 'recording', 'recorded', 'suspended', 'lost']);
-
-/** The predicted periods around a run's control value, as a guide for its verdict. */
-function expectedPeriod(answer: PredictAnswer): JudgeRequest['expectedPeriod'] {
-  const periods = [
-    ...answer.onsets.map((o) => o.period),
-    ...answer.cycles.filter((c) => c.stable).map((c) => c.period),
-  ];
-  if (periods.length === 0) return undefined;
-  return { low: Math.min(...periods) * 0.5, high: Math.max(...periods) * 2 };
-}
-
-async function recordOf(
-  conn: Conn,
-  of: Of,
-  run: Run,
-  prediction: Prediction,
-): Promise<{ readout: string; judge: JudgeRequest } | null> {
-  const rows = await readingsOfRun(conn, { labId: of.labId, runId: run.id });
-  if (rows.length === 0) return null;
-  const { model } = prediction.request;
-  const declared = model.readouts?.map((r) => r.symbol) ?? model.variables.map((v) => v.symbol);
-  const readout = declared.find((s) => rows.some((r) => r.readout === s)) ?? rows[0]!.readout;
-  const perUnit = minutesPerUnit(model.timeUnit);
-  const own = rows.filter((r) => r.readout === readout);
-  const noiseSd = model.readouts?.find((r) => r.symbol === readout)?.noiseSd;
-  const period = expectedPeriod(prediction.answer);
-  return {
-    readout,
-    judge: {
-      times: own.map((r) => r.minutes / perUnit),
-      values: own.map((r) => (r.state === 'value' ? r.value : null)),
-      ...(noiseSd ? { noiseSd } : {}),
-      ...(period ? { expectedPeriod: period } : {}),
-    },
-  };
-}
 
 const intervals = (answer: JudgeAnswer | null) => ({
   ...(answer?.amplitude ? { amplitude: answer.amplitude } : {}),
   ...(answer?.growthRate ? { growthRate: answer.growthRate } : {}),
 });
 
+async function settlingOf(conn: Conn, of: Of, runs: Run[]): Promise<Map<string, number>> {
+  if (runs.length === 0) return new Map();
+  const ids = [...new Set(runs.map((r) => r.levelId))];
+  const rows = await conn
+    .select({ id: level.id, settleMinutes: level.settleMinutes })
+    .from(level)
+    .where(and(eq(level.labId, of.labId), inArray(level.id, ids)));
+  return new Map(rows.map((r) => [r.id, r.settleMinutes]));
+}
+
 async function evidenceRun(
   conn: Conn,
-  of: Of,
+  of: Of & { most: number; settleMinutes: number },
   run: Run,
   prediction: Prediction,
-  verdicts: Awaited<ReturnType<typeof verdictsOfRuns>>,
+  verdicts: Verdicts,
 ): Promise<EvidenceRun | null> {
-  const record = await recordOf(conn, of, run, prediction);
+  const { model, control: axis } = prediction.request;
+  const record = await recordToJudge(
+    conn,
+    { labId: of.labId, run: { id: run.id, settleMinutes: of.settleMinutes }, most: of.most },
+    { model, answer: prediction.answer },
+  );
   const { verdict, standing, computed } = standingVerdict(
     verdicts.filter((v) => v.runId === run.id),
   );
   if (!record && !verdict) return null;
   // What was delivered counts, not what was planned.
-  const map = prediction.request.control.doseMap;
-  const control = doseToControl(map, run.deliveredDose ?? run.dose) ?? run.control;
+  const control = doseToControl(axis.doseMap, run.deliveredDose ?? run.dose) ?? run.control;
   return {
     runId: run.id,
     readout: record?.readout ?? null,
     judge: record?.judge ?? null,
+    said: record?.said ?? [],
     fixed: standing !== null && standing.kind !== 'computed',
     level: {
       control,
@@ -94,9 +71,12 @@ export async function buildEvidence(conn: Conn, of: Of): Promise<EvidencePlan | 
   if (!prediction) return null;
   const runs = (await runsWithReadings(conn, of)).filter((r) => COUNTED.has(r.state));
   const verdicts = await verdictsOfRuns(conn, { labId: of.labId, runIds: runs.map((r) => r.id) });
+  const settling = await settlingOf(conn, of, runs);
+  const most = pointsEach(runs.filter((r) => r.readings > 0).length);
   const found: EvidenceRun[] = [];
   for (const r of runs) {
-    const evidence = await evidenceRun(conn, of, r, prediction, verdicts);
+    const wanted = { ...of, most, settleMinutes: settling.get(r.levelId) ?? 0 };
+    const evidence = await evidenceRun(conn, wanted, r, prediction, verdicts);
     if (evidence) found.push(evidence);
   }
   if (found.length === 0) return null;

@@ -1,6 +1,6 @@
 import type { EstimateLevel, EstimateRequest, JudgeRequest } from '@/lib/contracts';
 
-/** One run as the evidence job sees it: judged anew where it has readings that no verdict has seen. */
+/** One run as the evidence job sees it: judged anew where it has readings. */
 export type EvidenceRun = {
   runId: string;
   readout: string | null;
@@ -8,6 +8,8 @@ export type EvidenceRun = {
   level: EstimateLevel;
   /** The verdict was overruled or published: a new computed one is kept beside it and does not count. */
   fixed: boolean;
+  /** What was done to the record before it was judged, in words that stand with its verdict. */
+  said: string[];
 };
 
 export type EvidencePlan = {

@@ -1,4 +1,7 @@
 import type { Control, DesignRequest, PredictAnswer } from '@/lib/contracts';
+import type { Belief } from '@/lib/planner/replan/belief';
+import type { DoneLevel } from '@/lib/planner/replan/propose-levels';
+import type { Envelope } from '@/lib/planner/replan/within-envelope';
 import type { Scheme } from './types';
 
 /** Input of a design job: one engine request an edge, and what its levels are timed by. */
@@ -17,6 +20,16 @@ export type DesignPlan = {
   recordCapMinutes: number | null;
   /** The version whose approval may cover the new one. */
   replanned: boolean;
+  /** Present when the levels are chosen from the evidence, within the approval in force. */
+  replan?: ReplanPart;
+};
+
+/** What the evidence so far adds: one belief a request, the approval, and what was done. */
+export type ReplanPart = {
+  /** In the order of the plan's requests, on the control axis. */
+  beliefs: Belief[];
+  envelope: Envelope;
+  done: DoneLevel[];
 };
 
 export type DesignedLevel = {

@@ -3,6 +3,7 @@ import { designEdges } from '@/lib/planner/design/design-edges';
 import type { DesignedLevel, DesignPlan } from '../../series/design-plan';
 import { timeLevel } from '../../series/time-level';
 import type { Work } from '../kind';
+import { proposeAll } from './propose';
 
 export type DesignResult = {
   levels: DesignedLevel[];
@@ -10,9 +11,13 @@ export type DesignResult = {
   notes: string[];
 };
 
-/** Chooses the levels of every edge, merges them into one order, and times each. */
+/**
+ * Chooses the levels of every edge, merges them into one order, and times each; after evidence, the
+ * next levels within the approval instead.
+ */
 export const workDesign: Work = (input, progress) => {
   const plan = input as DesignPlan;
+  if (plan.replan) return proposeAll(plan, plan.replan, progress);
   progress(0, plan.requests.length, 'choosing levels');
   const first = plan.requests[0];
   if (!first) throw new Error('a design needs at least one edge');

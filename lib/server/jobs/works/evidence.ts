@@ -21,7 +21,8 @@ export const workEvidence: Work = (input, progress) => {
       levels.push(run.level);
       return;
     }
-    const answer = judge(run.judge);
+    const judgedOnly = judge(run.judge);
+    const answer = { ...judgedOnly, reasons: [...judgedOnly.reasons, ...run.said] };
     judged.push({ runId: run.runId, readout: run.readout, answer });
     levels.push({
       ...run.level,
