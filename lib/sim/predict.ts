@@ -24,6 +24,11 @@ export interface PredictHooks {
   cancelled?(): boolean;
 }
 
+/** Share of the progress that the oscillations take, in draws. */
+const CYCLES_SHARE = 100;
+/** Settling over more periods than this counts as slow. */
+const SLOW_PERIODS = 20;
+
 /**
  * Where the steady state turns into a sustained oscillation as the control moves through its range.
  *
@@ -35,18 +40,30 @@ export function predict(request: PredictRequest, hooks: PredictHooks = {}): Pred
   const system = compileRequestModel(model);
   const range = rangeOf(system, request);
   checkDelays(system, system.values, range.controlIndex, range.from, range.to);
-  hooks.progress?.(0, request.draws, 'following the steady state');
+  const total = request.draws + CYCLES_SHARE;
+  hooks.progress?.(0, total, 'following the steady state');
   const analysis = analyse(system, system.values, range, system.start, hooks.cancelled);
+  stopIfCancelled(hooks);
   const notes: Note[] = analysisNotes(analysis);
   const branch = branchAnswer(analysis);
-  const plain = analysis.scan.onsets.map((o) => describeOnset(analysis, branch, o, request));
+  const plain = analysis.scan.onsets.map((o) => describeOnset(analysis, o, request, hooks));
+  stopIfCancelled(hooks);
   const spreads =
-    request.draws > 0 ? propagate(system, request, range, analysis, hooks) : plain.map(() => null);
+    request.draws > 0
+      ? propagate(system, request, range, analysis, hooks, total)
+      : plain.map(() => null);
   const onsets = plain.map((o, k) => ({ ...o, spread: spreads[k] ?? null }));
-  notes.push(...spreadNotes(onsets));
-  const cycles = request.cycles ? cyclesOf(system, range, branch, onsets, notes, hooks) : [];
-  hooks.progress?.(request.draws, request.draws, 'done');
+  notes.push(...settlingNotes(onsets, request), ...spreadNotes(onsets));
+  stopIfCancelled(hooks);
+  hooks.progress?.(request.draws, total, 'following the oscillation');
+  const cycles = request.cycles ? cyclesOf(system, range, branch, onsets, notes) : [];
+  stopIfCancelled(hooks);
+  hooks.progress?.(total, total, 'done');
   return { onsets, branch, cycles, notes };
+}
+
+function stopIfCancelled(hooks: PredictHooks): void {
+  if (hooks.cancelled?.()) throw new EngineError('limit-exceeded', 'cancelled');
 }
 
 /** The oscillations themselves, where they can be followed; what cannot be is noted, never invented. */
@@ -56,9 +73,7 @@ function cyclesOf(
   branch: Branch,
   onsets: readonly PredictedOnset[],
   notes: Note[],
-  hooks: PredictHooks,
 ): Cycle[] {
-  hooks.progress?.(0, 1, 'following the oscillation');
   const { cycles, omitted } = cyclesAlongBranch(system, system.values, range.controlIndex, {
     branch,
     onsets,
@@ -91,9 +106,9 @@ function rangeOf(system: CompiledSystem, request: PredictRequest): Range {
 
 function describeOnset(
   analysis: Analysis,
-  branch: Branch,
   onset: Onset,
   request: PredictRequest,
+  hooks: PredictHooks,
 ): PredictedOnset {
   const { context } = analysis;
   const { variables } = context.problem.system;
@@ -111,12 +126,28 @@ function describeOnset(
     growthSlope: onset.growthSlope,
     coexistence:
       kind.criticality === 'subcritical'
-        ? coexistenceWindow(context.problem.system, analysis, branch, onset)
+        ? coexistenceWindow(context.problem.system, analysis, onset, hooks.cancelled)
         : null,
     steadyState: Object.fromEntries(variables.map((v, i) => [v, onset.x[i]!])),
     dose: controlToDose(request.control.doseMap, onset.control),
     spread: null,
   };
+}
+
+/** Near an onset the steady state takes long to settle (three time constants, 95 %): where, and how long. */
+function settlingNotes(onsets: readonly PredictedOnset[], request: PredictRequest): Note[] {
+  const { control, model } = request;
+  return onsets.flatMap((o): Note[] => {
+    const distance = 3 / (SLOW_PERIODS * o.period * Math.abs(o.growthSlope));
+    if (!(distance > 0.02 * (control.to - control.from))) return [];
+    const digits = (v: number) => Number(v.toPrecision(3));
+    return [
+      {
+        code: 'slow-settling',
+        text: `within ${digits(distance)} of the onset at ${Number(o.value.toPrecision(6))} a disturbance takes more than ${SLOW_PERIODS} periods (${digits(SLOW_PERIODS * o.period)} ${model.timeUnit}) to settle or to grow`,
+      },
+    ];
+  });
 }
 
 function spreadNotes(onsets: readonly PredictedOnset[]): Note[] {

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { EngineError, predictAnswer } from '@/lib/contracts';
+import { EngineError, predictAnswer, predictRequest } from '@/lib/contracts';
+import { predict } from '@/lib/sim/predict';
 import { ask, codes } from './predict-case';
 
 const error = (run: () => unknown): EngineError => {
@@ -54,5 +55,42 @@ describe('requests that cannot be answered', () => {
     expect(answer.branch.stable.every(Boolean)).toBe(true);
     expect(codes(answer)).toContain('relaxed-start');
     predictAnswer.parse(answer);
+  });
+});
+
+describe('a caller that waits', () => {
+  const request = predictRequest.parse({
+    model: {
+      name: 'Brusselator',
+      timeUnit: 's',
+      variables: [
+        { symbol: 'x', start: 1 },
+        { symbol: 'y', start: 1 },
+      ],
+      parameters: [
+        { symbol: 'A', value: 1, spread: { kind: 'lognormal', cv: 0.1 } },
+        { symbol: 'B', value: 1 },
+      ],
+      equations: { x: 'A - (B + 1)*x + x^2*y', y: 'B*x - x^2*y' },
+    },
+    control: { symbol: 'B', from: 0.5, to: 4 },
+    draws: 200,
+  });
+
+  it('sees progress that only rises, to the end', () => {
+    const seen: [number, number][] = [];
+    predict(request, { progress: (done, total) => seen.push([done, total]) });
+    expect(seen.length).toBeGreaterThan(4);
+    seen.forEach(([done, total], i) => {
+      expect(total).toBe(seen[0]![1]);
+      expect(done).toBeGreaterThanOrEqual(i > 0 ? seen[i - 1]![0] : 0);
+    });
+    expect(seen.at(-1)![0]).toBe(seen[0]![1]);
+  });
+
+  it('can cancel, and is told so', () => {
+    let asked = 0;
+    const e = error(() => predict(request, { cancelled: () => ++asked > 3 }));
+    expect([e.code, e.message]).toEqual(['limit-exceeded', 'cancelled']);
   });
 });

@@ -1,12 +1,12 @@
-import type { Branch } from '@/lib/contracts';
-import { kicked } from '../cycles/along-branch';
 import { type Settled, settledCycle } from '../cycles/settled-cycle';
 import type { CompiledSystem } from '../equations/types';
 import type { Analysis } from './analyse';
 import type { Onset } from './scan';
 
 /** Settled courses at most for one window. */
-const CAP = 90;
+const CAP = 70;
+/** The first push away from rest, as a share of each variable. */
+const KICK = 0.02;
 
 type Cycle = Extract<Settled, { outcome: 'cycle' }>;
 
@@ -21,10 +21,10 @@ type Cycle = Extract<Settled, { outcome: 'cycle' }>;
 export function coexistenceWindow(
   system: CompiledSystem,
   analysis: Analysis,
-  branch: Branch,
   onset: Onset,
+  cancelled?: () => boolean,
 ): { from: number; to: number } | null {
-  const walk = new Walk(system, analysis, branch, onset);
+  const walk = new Walk(system, analysis, onset, cancelled);
   const edge = walk.edge();
   if (edge === null || Math.abs(edge - onset.control) <= 1e-6 * analysis.context.width) return null;
   return edge < onset.control
@@ -42,8 +42,8 @@ class Walk {
   constructor(
     private readonly system: CompiledSystem,
     private readonly analysis: Analysis,
-    private readonly branch: Branch,
     private readonly onset: Onset,
+    private readonly cancelled?: () => boolean,
   ) {
     this.inward = onset.growthSlope > 0 ? -1 : 1;
     this.limit = stableLimit(analysis, onset, this.inward);
@@ -59,7 +59,7 @@ class Walk {
     let cycle = begin.cycle;
     let bad: number | null = null;
     let step = Math.abs(at - onset.control) + 0.02 * Math.abs(limit - onset.control);
-    while (this.courses < CAP && (limit - at) * inward > 0) {
+    while (this.courses < CAP && !this.cancelled?.() && (limit - at) * inward > 0) {
       const tolerance = this.tolerance(at);
       let target: number = at + inward * step;
       if (bad !== null) {
@@ -104,8 +104,7 @@ class Walk {
       const control = onset.control - inward * shift;
       this.p[analysis.context.problem.controlIndex] = control;
       this.courses += 1;
-      const start = kicked(this.system, this.branch, control);
-      const settled = settledCycle(this.system, this.p, start, period);
+      const settled = settledCycle(this.system, this.p, pushed(onset.x), period);
       if (settled.outcome === 'cycle') return { control, cycle: settled };
     }
     return null;
@@ -134,14 +133,33 @@ function swingRatio(a: Cycle, b: Cycle): number {
   return count > 0 ? sum / count : 0;
 }
 
-/** How far the control may go on the stable side: neighbouring onset, loss of stability, end of the branch. */
-function stableLimit({ scan }: Analysis, onset: Onset, inward: 1 | -1): number {
-  const nodes = [...scan.nodes].filter((n) => (n.control - onset.control) * inward > 0);
-  nodes.sort((a, b) => (a.control - b.control) * inward);
+/** The state with its variables moved apart a little. */
+function pushed(x: Float64Array): Float64Array {
+  const largest = x.reduce((m, v) => Math.max(m, Math.abs(v)), 0);
+  return x.map((v, i) => v + (i % 2 === 0 ? 1 : -1) * KICK * (Math.abs(v) || largest || 1));
+}
+
+/**
+ * How far the control may go on the stable side, along the onset's own sheet of the branch: to the
+ * neighbouring onset, the loss of stability, a fold or the branch's end.
+ */
+function stableLimit({ scan, context }: Analysis, onset: Onset, inward: 1 | -1): number {
+  const { nodes } = scan;
+  const gaps = nodes.map((n) =>
+    context.length(
+      n.x.map((v, i) => v - onset.x[i]!),
+      n.control - onset.control,
+      n.scale,
+    ),
+  );
+  const nearest = gaps.indexOf(Math.min(...gaps));
+  const sheet = Math.sign(nodes[nearest]!.controlSlope) * inward;
   let limit = onset.control;
-  for (const node of nodes) {
-    if (node.spectrum.unstable > 0) break;
-    limit = node.control;
+  for (let i = nearest; i >= 0 && i < nodes.length; i += sheet) {
+    const node = nodes[i]!;
+    const ahead = (node.control - limit) * inward;
+    if (i !== nearest && (ahead < 0 || node.spectrum.unstable > 0)) break;
+    if (ahead > 0) limit = node.control;
   }
   for (const other of scan.onsets) {
     const ahead = (other.control - onset.control) * inward;

@@ -28,6 +28,7 @@ export function propagate(
   range: Range,
   nominal: Analysis,
   hooks: PropagateHooks,
+  total = request.draws,
 ): OnsetSpread[] {
   const onsets = nominal.scan.onsets;
   const found: { values: number[]; doses: (number | null)[] }[] = onsets.map(() => ({
@@ -41,8 +42,8 @@ export function propagate(
     const exact = sampling.uncertain.length === 0;
     draws.forEach((draw, i) => {
       if (i % 50 === 0) {
-        hooks.progress?.(i, request.draws, 'drawing from the spreads');
-        if (hooks.cancelled?.()) throw new EngineError('limit-exceeded', 'cancelled', 'draws');
+        hooks.progress?.(i, total, 'drawing from the spreads');
+        if (hooks.cancelled?.()) throw new EngineError('limit-exceeded', 'cancelled');
       }
       const values = exact
         ? onsets.map((o) => o.control)
