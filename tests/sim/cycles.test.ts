@@ -2,7 +2,6 @@ import { describe, expect, it } from 'vitest';
 import type { SystemModel } from '@/lib/contracts/model';
 import type { Branch } from '@/lib/contracts/predict';
 import { cyclesAlongBranch } from '@/lib/sim/cycles/along-branch';
-import { coexistence } from '@/lib/sim/cycles/coexistence';
 import { settledCycle } from '@/lib/sim/cycles/settled-cycle';
 import { compileModel } from '@/lib/sim/equations/compile';
 
@@ -26,16 +25,6 @@ const circle = model(
   [0.1, 0],
   { mu: 1, w: 2 },
 );
-/** r′ = r(mu − c + r² − r⁴): subcritical at mu = c, fold of cycles at mu = c − 1/4, exact. */
-const hard = model(
-  {
-    x: '(mu - c)*x - y + x*(x^2 + y^2) - x*(x^2 + y^2)^2',
-    y: 'x + (mu - c)*y + y*(x^2 + y^2) - y*(x^2 + y^2)^2',
-  },
-  [0.1, 0],
-  { mu: 1, c: 0.6 },
-);
-
 /** The branch at rest in 0, unstable above an onset. */
 function restBranch(from: number, to: number, onset: number, frequency: number): Branch {
   const control = Array.from({ length: 41 }, (_, i) => from + ((to - from) * i) / 40);
@@ -162,36 +151,5 @@ describe('cycles along the branch', () => {
     expect(cycles).toEqual([]);
     expect(omitted).toHaveLength(24);
     expect(omitted[10]!.why).not.toBe('');
-  });
-});
-
-describe('coexistence of steady state and cycle', () => {
-  it('next to a subcritical onset reaches to the fold of cycles (exact: onset − 1/4)', () => {
-    const system = compileModel(hard);
-    const found = coexistence(
-      system,
-      system.values,
-      0,
-      { value: 0.6, period: 2 * Math.PI, oscillates: 'above' },
-      { branch: restBranch(0.1, 1, 0.6, 1), limits: { from: 0.1, to: 1 } },
-    );
-    expect(found?.to).toBe(0.6);
-    expect(Math.abs(found!.from - 0.35)).toBeLessThan(2e-3);
-  });
-
-  it('stops at the end of the range, and is null where no cycle survives the onset', () => {
-    const system = compileModel(hard);
-    const onset = { value: 0.6, period: 2 * Math.PI, oscillates: 'above' as const };
-    const near = { branch: restBranch(0.5, 1, 0.6, 1), limits: { from: 0.5, to: 1 } };
-    expect(coexistence(system, system.values, 0, onset, near)?.from).toBe(0.5);
-    const soft = compileModel(circle);
-    const gone = coexistence(
-      soft,
-      soft.values,
-      0,
-      { value: 0, period: Math.PI, oscillates: 'above' },
-      { branch: restBranch(-1, 1, 0, 2), limits: { from: -1, to: 1 } },
-    );
-    expect(gone).toBeNull();
   });
 });

@@ -87,6 +87,14 @@ describe('courses without delay against exact solutions', () => {
     expect(readouts.c![1]).toBeCloseTo(0.2841638, 6);
   });
 
+  it('goes through a removable 0/0 of a rate function, also when it starts there', () => {
+    // x/(1 − exp(−x)) − x/2 − 1 is even and 0 at 0; beside it x′ = 1 decides.
+    const m = model({ x: '1', y: 'x/(1 - exp(-x)) - x/2' }, {});
+    const { readouts } = run(m, 1, 1);
+    // ∫ x/2 · coth(x/2) from 0 to 1 = 1 + 1/36 − 1/3600 + 1/211680 − …, the series of Bernoulli numbers.
+    expect(readouts.y![1]).toBeCloseTo(1 + 1 / 36 - 1 / 3600 + 1 / 211680 - 1 / 10886400, 7);
+  });
+
   it('conserves the energy of a pendulum with large swings', () => {
     const { readouts } = run(model({ x: 'v', v: '-sin(x)' }, { x: 2.5 }), 200, 1);
     readouts.x!.forEach((x, i) => {

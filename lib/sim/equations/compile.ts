@@ -1,8 +1,8 @@
 import { EngineError } from '@/lib/contracts/common';
 import type { SystemModel } from '@/lib/contracts/model';
-import { differentiate } from './differentiate';
+import { differentiate, gradient } from './differentiate';
 import { type Generated, generate, type Target } from './emit';
-import { Graph, type LeafOp, reachable } from './graph';
+import { Graph, type LeafOp } from './graph';
 import { FUNCTIONS, parseExpression, type Scope } from './parse';
 import { ExpressionError } from './tokens';
 import type { CompiledSystem } from './types';
@@ -237,20 +237,9 @@ function unit(graph: Graph, leaf: LeafOp, index: number) {
 
 /** The entries of the Jacobian that are not identically zero, by row and column. */
 function jacobianEntries(graph: Graph, rhs: readonly number[], columns: number): Target[] {
-  const rowsOf = new Map<number, number[]>();
-  rhs.forEach((root, row) => {
-    for (const id of reachable(graph, [root])) {
-      const node = graph.nodes[id]!;
-      if (node.op !== 'z') continue;
-      rowsOf.set(node.index, [...(rowsOf.get(node.index) ?? []), row]);
-    }
-  });
-  const entries: Target[] = [];
-  for (const [column, rows] of [...rowsOf].sort((a, b) => a[0] - b[0])) {
-    const roots = rows.map((row) => rhs[row]!);
-    differentiate(graph, roots, unit(graph, 'z', column)).forEach((root, i) => {
-      if (root !== graph.zero) entries.push({ slot: rows[i]! * columns + column, root });
-    });
-  }
-  return entries.sort((a, b) => a.slot - b.slot);
+  return rhs.flatMap((root, row) =>
+    [...gradient(graph, root)]
+      .sort((a, b) => a[0] - b[0])
+      .map(([column, derivative]) => ({ slot: row * columns + column, root: derivative })),
+  );
 }

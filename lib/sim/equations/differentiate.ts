@@ -1,4 +1,4 @@
-import { type Graph, type LeafOp, type Node, reachable } from './graph';
+import { children, type Graph, type LeafOp, type Node, reachable } from './graph';
 
 /** The derivative of a leaf along the chosen direction, as a node; null where it is zero. */
 export type Seed = (op: LeafOp, index: number) => number | null;
@@ -18,6 +18,33 @@ export function differentiate(graph: Graph, roots: readonly number[], seed: Seed
     if (result !== graph.zero) derivative.set(id, result);
   }
   return roots.map((root) => derivative.get(root) ?? graph.zero);
+}
+
+/**
+ * The gradient of one root by the entries of the stacked state, in one descending walk (reverse accumulation, Griewank &
+ * Walther 2008): entry index → derivative, without those that are identically zero. Costs as much as the root is
+ * large, however many entries it has.
+ */
+export function gradient(g: Graph, root: number): Map<number, number> {
+  const adjoint = new Map<number, number>([[root, g.one]]);
+  const result = new Map<number, number>();
+  for (const id of reachable(g, [root]).reverse()) {
+    const own = adjoint.get(id);
+    if (own === undefined || own === g.zero) continue;
+    const node = g.nodes[id]!;
+    if (node.op === 'z') result.set(node.index, own);
+    for (const child of new Set(children(node))) {
+      const partial = derivativeOf(
+        g,
+        id,
+        () => null,
+        (c) => (c === child ? g.one : g.zero),
+      );
+      if (partial === g.zero) continue;
+      adjoint.set(child, g.add(adjoint.get(child) ?? g.zero, g.mul(own, partial)));
+    }
+  }
+  return result;
 }
 
 function derivativeOf(g: Graph, id: number, seed: Seed, d: (child: number) => number): number {

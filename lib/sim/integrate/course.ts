@@ -31,6 +31,7 @@ export interface CourseOptions {
 const FLOOR = 1e-3;
 const ORDER = 5;
 const MAX_ITERATIONS = 12;
+const BESIDE = 1e-8;
 
 /**
  * A time course of a system with or without delays, by the method of steps (Bellen & Zennaro 2003) on the pair of
@@ -142,6 +143,12 @@ export class Course {
     if (finite(out)) return true;
     for (let i = 0; i < this.z.length; i += 1) {
       if (this.system.nonnegative[i % n] && this.z[i]! < 0) this.z[i] = 0;
+    }
+    this.system.rhs(this.z, this.p, out);
+    if (finite(out)) return true;
+    // A removable 0/0, such as x/(1 - exp(-x)) at 0, is stepped beside.
+    for (let i = 0; i < this.z.length; i += 1) {
+      this.z[i] = this.z[i]! + BESIDE * (Math.abs(this.z[i]!) || this.size[i % n]! || 1);
     }
     this.system.rhs(this.z, this.p, out);
     return finite(out);
