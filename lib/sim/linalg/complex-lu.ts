@@ -10,10 +10,21 @@ export interface ComplexLu {
   readonly outcome: 'ok' | 'singular';
 }
 
+/** Work space that a caller may keep: n pivots and n row sizes. */
+export interface ComplexScratch {
+  readonly pivots: Int32Array;
+  readonly scale: Float64Array;
+}
+
 /** Factorises re + i·im (n × n) in place. Never throws; look at `outcome` before use. */
-export function complexLuFactor(re: Float64Array, im: Float64Array, n: number): ComplexLu {
-  const pivots = new Int32Array(n);
-  const scale = new Float64Array(n);
+export function complexLuFactor(
+  re: Float64Array,
+  im: Float64Array,
+  n: number,
+  scratch?: ComplexScratch,
+): ComplexLu {
+  const pivots = scratch?.pivots ?? new Int32Array(n);
+  const scale = scratch?.scale ?? new Float64Array(n);
   for (let i = 0; i < n; i++) {
     let largest = 0;
     for (let j = i * n; j < (i + 1) * n; j++) {

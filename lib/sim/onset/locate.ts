@@ -1,4 +1,5 @@
 import { luFactor, luSolve } from '../linalg/lu';
+import { nullVectors } from '../steady/characteristic';
 import type { BranchContext } from '../steady/node';
 import { stateScale } from '../steady/problem';
 import { type Spectrum, spectrum } from '../steady/spectrum';
@@ -30,7 +31,7 @@ export function locateCrossing(context: BranchContext, guess: Crossing): Crossin
     if (!(omega > 0) || !problem.linearise(x, control)) return null;
     stateScale(x, seen, scale);
     if (!work.solve(0, omega)) return null;
-    if (iteration < 4) {
+    if (iteration === 0) {
       work.adapt();
       if (!work.solve(0, omega)) return null;
     }
@@ -42,6 +43,7 @@ export function locateCrossing(context: BranchContext, guess: Crossing): Crossin
     const lu = luFactor(onsetJacobian(context, scale, omega), m);
     if (lu.outcome === 'singular') return null;
     luSolve(lu, step);
+    work.adapt();
     let size = 0;
     for (let i = 0; i < m; i++) size = Math.max(size, Math.abs(step[i]!));
     if (!Number.isFinite(size)) return null;
@@ -136,12 +138,7 @@ function slopeAlongBranch(
 ): number | null {
   const { problem, work, change } = context;
   const n = problem.n;
-  work.reset(scale);
-  for (let pass = 0; pass < 3; pass++) {
-    if (!work.solve(0, at.omega)) return null;
-    work.adapt();
-  }
-  if (!work.solve(0, at.omega)) return null;
+  if (!nullVectors(work, scale, 0, at.omega)) return null;
   const lu = luFactor(Float64Array.from(problem.total), n);
   if (lu.outcome === 'singular') return null;
   const dx = Float64Array.from(problem.fc, (v) => -v);

@@ -1,4 +1,9 @@
-import { complexLuFactor, complexLuSolve, complexLuSolveAdjoint } from '../linalg/complex-lu';
+import {
+  type ComplexScratch,
+  complexLuFactor,
+  complexLuSolve,
+  complexLuSolveAdjoint,
+} from '../linalg/complex-lu';
 import type { Problem } from './problem';
 
 /**
@@ -24,6 +29,11 @@ export class Characteristic {
   private readonly cr: Float64Array;
   private readonly ci: Float64Array;
   private readonly scale: Float64Array;
+  private readonly ar: Float64Array;
+  private readonly ai: Float64Array;
+  private readonly xr: Float64Array;
+  private readonly xi: Float64Array;
+  private readonly scratch: ComplexScratch;
 
   constructor(readonly problem: Problem) {
     const n = problem.n;
@@ -38,6 +48,11 @@ export class Characteristic {
     this.cr = make();
     this.ci = make();
     this.scale = make().fill(1);
+    this.ar = new Float64Array((n + 1) * (n + 1));
+    this.ai = new Float64Array((n + 1) * (n + 1));
+    this.xr = new Float64Array(n + 1);
+    this.xi = new Float64Array(n + 1);
+    this.scratch = { pivots: new Int32Array(n + 1), scale: new Float64Array(n + 1) };
   }
 
   /** Fresh borders, sized by the variables' scale; their directions are fixed and generic. */
@@ -75,19 +90,20 @@ export class Characteristic {
   solve(re: number, im: number): boolean {
     const n = this.size;
     const m = n + 1;
-    const a = new Float64Array(m * m);
-    const b = new Float64Array(m * m);
+    const { ar: a, ai: b, xr, xi } = this;
     characteristicMatrix(this.problem, re, im, a, b, m);
+    a[m * m - 1] = 0;
+    b[m * m - 1] = 0;
     for (let i = 0; i < n; i++) {
       a[i * m + n] = this.br[i]!;
       b[i * m + n] = this.bi[i]!;
       a[n * m + i] = this.cr[i]!;
       b[n * m + i] = -this.ci[i]!;
     }
-    const lu = complexLuFactor(a, b, m);
+    const lu = complexLuFactor(a, b, m, this.scratch);
     if (lu.outcome === 'singular') return false;
-    const xr = new Float64Array(m);
-    const xi = new Float64Array(m);
+    xr.fill(0);
+    xi.fill(0);
     xr[n] = 1;
     complexLuSolve(lu, xr, xi);
     this.gr = xr[n]!;
