@@ -167,6 +167,11 @@ describe('delays', () => {
     expect([...tau]).toEqual([2, 1]);
   });
 
+  it('refuses more delays than can be worked', () => {
+    const many = Array.from({ length: 101 }, (_, i) => `x(t - ${i + 1})`).join(' + ');
+    expect(() => compileModel(model({ x: many }))).toThrow(/at most 100 delays/);
+  });
+
   it('refuses a delay that is negative somewhere in the control range', () => {
     const system = compileModel(model({ x: '-x(t - (tau - s))' }, { tau: 2, s: 1 }));
     expect(() => checkDelays(system, system.values, 0, 1, 3)).not.toThrow();

@@ -216,6 +216,10 @@ describe('what a course reports', () => {
       ),
     ).toMatchObject({ code: 'invalid-request', at: 'from.y' });
     expect(failure(() => run(m, 1e7, 1)).code).toBe('limit-exceeded');
+    expect(failure(() => run(model({ x: '2y' }, {}), 1, 1))).toMatchObject({
+      code: 'invalid-equation',
+      at: 'model.equations.x',
+    });
   });
 
   it('stops after its allowance of steps instead of running on', () => {

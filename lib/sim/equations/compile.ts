@@ -21,6 +21,8 @@ interface ParsedModel {
   readonly problems: ModelProblem[];
 }
 
+const MAX_DELAYS = 100;
+const MAX_JACOBIAN = 4_000_000;
 const SYMBOL = /^[A-Za-z][A-Za-z0-9_]*$/;
 
 /** Every problem of the model's symbols, equations and readouts; empty when it can be compiled. */
@@ -37,6 +39,14 @@ export function compileModel(model: SystemModel): CompiledSystem {
   const parsed = parseModel(model);
   const first = parsed.problems[0];
   if (first) throw new EngineError('invalid-equation', first.message, first.at);
+  const entries = parsed.rhs.length ** 2 * (parsed.delays.length + 1);
+  if (parsed.delays.length > MAX_DELAYS || entries > MAX_JACOBIAN) {
+    throw new EngineError(
+      'limit-exceeded',
+      `${parsed.delays.length} different delays in ${parsed.rhs.length} equations are too many to work: at most ${MAX_DELAYS} delays, fewer for large models`,
+      'equations',
+    );
+  }
   return new System(model, parsed);
 }
 

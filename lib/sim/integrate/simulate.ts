@@ -1,9 +1,9 @@
 import { EngineError } from '@/lib/contracts/common';
 import type { SimulateAnswer, SimulateRequest } from '@/lib/contracts/predict';
 import { checkDelays } from '../equations/check-delays';
-import { compileModel } from '../equations/compile';
 import type { CompiledSystem } from '../equations/types';
 import { type RandomSource, randomSource } from '../random/generator';
+import { compileRequestModel } from '../request-model';
 import { type Advance, Course } from './course';
 
 const MAX_SAMPLES = 2_000_000;
@@ -18,7 +18,7 @@ const MAX_STEPS = 3_000_000;
  * leaves the finite range, is stiffer than the integrator can follow, or is sampled too often.
  */
 export function simulate(request: SimulateRequest): SimulateAnswer {
-  const system = compileModel(request.model);
+  const system = compileRequestModel(request.model);
   const p = parameterValues(system, request.set);
   const start = startState(system, request.from ?? {});
   checkDelays(system, p, -1, 0, 0);
@@ -31,7 +31,7 @@ export function simulate(request: SimulateRequest): SimulateAnswer {
     );
   }
   const times = Array.from({ length: count }, (_, i) => i * request.every);
-  const columns = sample(system, p, start, times);
+  const columns = sampleReadouts(system, p, start, times);
   if (request.noise) addNoise(system, columns, randomSource(request.seed));
   return {
     times,
@@ -71,8 +71,11 @@ function startState(system: CompiledSystem, from: Record<string, number>): Float
   return x;
 }
 
-/** Readouts at rising times, one column a readout. */
-function sample(
+/**
+ * Readouts at rising times from 0 on, one column a readout, for a model that is compiled already: `p` its parameter
+ * values, `start` its state and history before 0. Throws EngineError `limit-exceeded` as `simulate` does.
+ */
+export function sampleReadouts(
   system: CompiledSystem,
   p: Float64Array,
   start: Float64Array,
