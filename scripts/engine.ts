@@ -123,6 +123,8 @@ function readCommand(args: readonly string[]): Command {
 
 /** Reads the request from standard input, writes the answer to standard output; errors in place, exit status 2. */
 export async function run(args: readonly string[]): Promise<void> {
+  // A reader that closes early (head, say) is no failure of the engine's.
+  process.stdout.on('error', () => process.exit());
   let failed = false;
   const attempt = async (work: () => Promise<unknown>): Promise<unknown> => {
     try {

@@ -70,7 +70,7 @@ export function analysisNotes(analysis: Analysis): Note[] {
       text: `the steady state is unstable already at ${where(context.from)}, with ${first.unstable} unstable dimension${first.unstable > 1 ? 's' : ''}`,
     });
   }
-  notes.push(...eventNotes(analysis, where));
+  notes.push(...eventNotes(analysis, where), ...doubtNotes(analysis, where));
   for (const control of neutralSaddles(analysis)) {
     notes.push({
       code: 'neutral-saddle',
@@ -88,6 +88,26 @@ export function analysisNotes(analysis: Analysis): Note[] {
     notes.push({
       code: 'no-onset',
       text: `no onset of oscillation between ${where(context.from)} and ${Number(context.to.toPrecision(6))} on this branch`,
+    });
+  }
+  return notes;
+}
+
+/** Where stability could not be told for certain; such places must not pass for steady ones. */
+function doubtNotes({ scan }: Analysis, where: (v: number) => string): Note[] {
+  const notes: Note[] = [];
+  const unresolved = scan.events.find((e) => e.kind === 'unresolved');
+  if (unresolved) {
+    notes.push({
+      code: 'branch-incomplete',
+      text: `stability changes near ${where(unresolved.control)} in a way that could not be resolved`,
+    });
+  }
+  const vague = scan.nodes.find((n) => n.spectrum.outcome === 'uncertain');
+  if (vague) {
+    notes.push({
+      code: 'branch-incomplete',
+      text: `from ${where(vague.control)} on the delays are so long that the leading roots are only approximate`,
     });
   }
   return notes;

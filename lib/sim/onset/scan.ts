@@ -48,6 +48,11 @@ export function scanBranch(context: BranchContext, branch: readonly Node[]): Sca
 
 function resolve(context: BranchContext, scan: Scan, a: Node, b: Node, depth: number): void {
   const change = b.spectrum.unstable - a.spectrum.unstable;
+  // With more than one pair unstable throughout, nothing here can be an onset.
+  if (Math.min(a.spectrum.unstable, b.spectrum.unstable) > 2) {
+    if (change % 2 !== 0) recordReal(scan, a, b);
+    return;
+  }
   const h = chord(context, a, b);
   if (Math.abs(change) === 2) {
     const crossing = crossingBetween(context, a, b, h);
