@@ -166,7 +166,7 @@ function widenByCurvature(points: LinePoint[], interval: Interval): Interval {
   const shift = near - interval.value;
   return {
     value: interval.value,
-    low: Math.min(interval.low, interval.value + Math.min(0, 1.5 * shift)),
-    high: Math.max(interval.high, interval.value + Math.max(0, 1.5 * shift)),
+    low: Math.min(interval.low, interval.value + Math.min(0, 2.5 * shift)),
+    high: Math.max(interval.high, interval.value + Math.max(0, 2.5 * shift)),
   };
 }

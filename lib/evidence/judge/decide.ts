@@ -27,6 +27,10 @@ export const THRESHOLDS = {
   sustainedCycles: 4.8,
   /** A decay counts when the interval widened from 90 % to 95 % still lies below zero. */
   widen: 1.96 / 1.645,
+  /** e-foldings up to which a rising size counts as unchanged, and from which as growth. */
+  slightGrowth: 0.4,
+  growth: 0.3,
+  growthInFewCycles: 1,
   ringCycles: 8,
   ringChance: 0.005,
   ringVariation: 0.35,
@@ -44,7 +48,8 @@ export function decideRhythm(r: Rhythm, samplesPerCycle: number): Decision {
   const growth = { value: r.driven.growth, low: r.interval.low, high: r.interval.high };
   const cycles = r.oscillation.frequency;
   if (isDriven(r)) return decideDriven(r, growth, cycles);
-  if (growth.low > 0) return decideGrowing(growth, cycles);
+  if (growth.low > 0 && growth.value > THRESHOLDS.slightGrowth)
+    return decideGrowing(growth, cycles);
   const high = growth.value + THRESHOLDS.widen * (growth.high - growth.value);
   if (high < 0) return decideDecaying(growth, cycles);
   const loss = cycles < THRESHOLDS.fewCycles ? THRESHOLDS.lossInFewCycles : THRESHOLDS.loss;
@@ -114,16 +119,18 @@ function decideDriven(
 }
 
 function decideGrowing(growth: NonNullable<Decision['growth']>, cycles: number): Decision {
-  if (cycles >= 4) {
-    const reason = `The rhythm grows: by a factor of ${factor(growth.value)} over ${figure(cycles)} cycles.`;
+  const few = cycles < THRESHOLDS.manyCycles;
+  const least = few ? THRESHOLDS.growthInFewCycles : THRESHOLDS.growth;
+  if (cycles >= THRESHOLDS.sustainedCycles && growth.low > least) {
+    const reason = `The rhythm grows: by a factor of ${factor(growth.value)} over ${figure(cycles)} cycles, more than noise would bring about.`;
     return { verdict: 'sustained', growth, reasons: [reason] };
   }
   return {
     verdict: 'undecided',
     growth,
     reasons: [
-      `The rhythm seems to grow, but only ${figure(cycles)} cycles were recorded.`,
-      'To settle it, record at least 5 cycles.',
+      `The rhythm grows by a factor of ${factor(growth.value)} over ${figure(cycles)} cycles; noise can do that for a while.`,
+      `To settle it, go on recording until its size stays the same for 8 cycles, about ${Math.ceil(cycles + 10)} in all.`,
     ],
   };
 }

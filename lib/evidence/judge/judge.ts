@@ -108,6 +108,7 @@ function sustainedFrom(request: JudgeRequest, series: Series, share: number): De
   const decision = decideRhythm(again.rhythm, part.readings / again.rhythm.oscillation.frequency);
   if (decision.verdict !== 'sustained' || decision.growth === null) return null;
   const { value, low, high } = decision.growth;
+  if (low > 0 && value > THRESHOLDS.slightGrowth) return null;
   const stretch = series.span / part.span;
   return {
     verdict: 'sustained',
