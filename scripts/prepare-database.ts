@@ -2,8 +2,9 @@ import { resolve } from 'node:path';
 import { inArray } from 'drizzle-orm';
 import { openDatabase } from '@/db/client';
 import { user } from '@/db/schema';
-import { demoSignIns, seedDemoLab } from '@/db/seed';
+import { demoSignIns } from '@/db/seed';
 import { EnvError, env } from '@/lib/server/env';
+import { seedDemo } from './demo';
 import { migrateDatabase } from './setup/migrate';
 
 /**
@@ -22,7 +23,7 @@ async function main(): Promise<void> {
   await migrateDatabase(config, resolve('db/migrations'));
   const { db, close } = openDatabase({ ...config, connections: 4 });
   try {
-    const { seeded } = await seedDemoLab(db);
+    const { seeded } = await seedDemo(db, new Date());
     const emails = demoSignIns.map((one) => one.email);
     const found = await db
       .select({ email: user.email })
@@ -36,7 +37,15 @@ async function main(): Promise<void> {
   }
 }
 
+/** What failed and why: a failed statement carries the database's own reason as its cause. */
+function account(error: unknown): string {
+  if (error instanceof EnvError) return error.message;
+  if (!(error instanceof Error)) return String(error);
+  const reason = error.cause instanceof Error ? `\nbecause: ${error.cause.message}` : '';
+  return `${error.stack ?? error.message}${reason}`;
+}
+
 main().catch((error: unknown) => {
-  console.error(error instanceof EnvError ? error.message : error);
+  console.error(account(error));
   process.exitCode = 1;
 });

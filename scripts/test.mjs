@@ -115,8 +115,7 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
   process.on(signal, () => {
     if (isEnding()) return;
     console.log('\n· Ending …');
-    endCommands();
-    leave(1);
+    endCommands().then(() => leave(1));
   });
 }
 

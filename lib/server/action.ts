@@ -1,5 +1,5 @@
 import type { z } from 'zod';
-import type { Db } from '@/db/client';
+import type { Conn } from '@/db/client';
 import type { ActionResult } from '@/lib/contracts';
 import { type Action, type Allowance, demand } from './authorise';
 import { database } from './database';
@@ -8,7 +8,7 @@ import { log } from './log';
 import { type Member, requireMember } from './member';
 
 export type ActionContext = {
-  db: Db;
+  db: Conn;
   member: Member;
   allowance: Exclude<Allowance, 'no'>;
   now: Date;

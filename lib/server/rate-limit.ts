@@ -1,10 +1,10 @@
 import { eq, sql } from 'drizzle-orm';
-import type { Db } from '@/db/client';
+import type { Conn } from '@/db/client';
 import { rateCount } from '@/db/schema';
 
 /** Counts an attempt in a fixed window; false once there were more than `most`. */
 export async function limitAttempts(
-  db: Db,
+  db: Conn,
   key: string,
   most: number,
   windowMs: number,

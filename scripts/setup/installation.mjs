@@ -66,7 +66,7 @@ export class Installation {
 
   /** Ends everything in order: those who write first, the database last. */
   async stop() {
-    endCommands();
+    await endCommands();
     await this.#supervisor.stop('web server', 'worker');
     await this.#supervisor.stop('mail catcher');
     if (!this.#locked) return;
@@ -148,7 +148,8 @@ export class Installation {
 
   async #prepareDatabase(environment) {
     const script = join(this.#root, 'dist', 'prepare-database.mjs');
-    const options = { cwd: this.#root, env: environment };
+    // A change of tables that is cut short cannot be taken back.
+    const options = { cwd: this.#root, env: environment, finishes: true };
     const { status, output } = await runForOutput(process.execPath, [script], options);
     if (status !== 0) throw new Problem('The database could not be prepared; see above.');
     return JSON.parse(output.trim().split('\n').at(-1));

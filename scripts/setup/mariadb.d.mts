@@ -16,11 +16,15 @@ export type RunningMariadb = {
   places: MariadbPlaces;
 };
 
-export function mariadbPlaces(folder: string): MariadbPlaces;
-
 export function startMariadb(
   folder: string,
-  settings: { password: string; port?: number; databases: string[]; user: string },
+  settings: {
+    password: string;
+    port?: number;
+    databases: string[];
+    user: string;
+    durable?: boolean;
+  },
 ): Promise<RunningMariadb>;
 
 export function stopMariadb(server: RunningMariadb): Promise<'ended' | 'killed'>;

@@ -57,7 +57,8 @@ const shortHash = (text) => createHash('sha256').update(text).digest('hex').slic
  * Starts the private MariaDB of a folder, creating it on first use.
  *
  * @param {string} folder absolute path
- * @param {{ password: string, port?: number, databases: string[], user: string }} settings
+ * @param {{ password: string, port?: number, databases: string[], user: string, durable?: boolean }} settings
+ *   `durable: false` is for tests: a crash of the machine may lose the database.
  * @returns {Promise<{ host: '127.0.0.1', port: number, child: import('node:child_process').ChildProcess, places: Places }>}
  */
 export async function startMariadb(folder, settings) {
@@ -198,7 +199,14 @@ function grantsText({ user, password, databases }) {
   return `${lines.join('\n')}\n`;
 }
 
-function optionsText(places, port, { user, password }) {
+/** For databases that are thrown away: nothing waits for the disk. */
+const forgetful = `innodb-flush-log-at-trx-commit = 0
+innodb-flush-method = nosync
+innodb-doublewrite = 0
+sync-frm = 0
+`;
+
+function optionsText(places, port, { user, password, durable = true }) {
   return `# Written at each start.
 [mariadbd]
 datadir = ${places.data}
@@ -226,7 +234,7 @@ aria-pagecache-buffer-size = 8M
 query-cache-type = 0
 query-cache-size = 0
 performance-schema = 0
-${userInfo().uid === 0 ? 'user = root\n' : ''}
+${durable ? '' : forgetful}${userInfo().uid === 0 ? 'user = root\n' : ''}
 [client]
 socket = ${places.socket}
 user = ${user}

@@ -4,6 +4,8 @@ import mysql, { type RowDataPacket } from 'mysql2/promise';
 import type { DatabaseConfig } from '@/db/client';
 
 const lockSeconds = 120;
+/** Where Drizzle writes down the migrations that are complete. */
+const recordTable = '__drizzle_migrations';
 
 /**
  * Brings a database to the newest migration. Two starting servers take turns: MariaDB does not roll
@@ -35,9 +37,31 @@ export async function migrateDatabase(
     if (Number(rows[0]?.taken) !== 1) {
       throw new Error(`Another process is still migrating ${config.database}.`);
     }
+    await clearUnfinished(connection, config.database);
     await migrate(drizzle(connection), { migrationsFolder });
   } finally {
     // Closing the connection gives the lock back, whatever happened on it.
     await connection.end();
   }
+}
+
+/**
+ * Empties a database whose very first migration was cut short, so that it can run again. Nothing is
+ * lost: no server is started before the first migration is complete and on record.
+ */
+async function clearUnfinished(connection: mysql.Connection, database: string): Promise<void> {
+  const [tables] = await connection.query<RowDataPacket[]>(
+    'SELECT table_name AS name FROM information_schema.tables WHERE table_schema = DATABASE()',
+  );
+  if (tables.length === 0) return;
+  if (tables.some((table) => table.name === recordTable)) {
+    const [done] = await connection.query<RowDataPacket[]>(`SELECT id FROM ${recordTable} LIMIT 1`);
+    if (done.length > 0) return;
+  }
+  const name = connection.escapeId(database);
+  await connection.query(`DROP DATABASE ${name}`);
+  await connection.query(
+    `CREATE DATABASE ${name} CHARACTER SET utf8mb4 COLLATE utf8mb4_unicode_ci`,
+  );
+  await connection.query(`USE ${name}`);
 }

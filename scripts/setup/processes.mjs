@@ -1,4 +1,5 @@
 import { spawn } from 'node:child_process';
+import { once } from 'node:events';
 import { closeSync, existsSync, openSync, readdirSync, readFileSync } from 'node:fs';
 import { Problem } from './problem.mjs';
 
@@ -6,16 +7,21 @@ const sleep = (milliseconds) => new Promise((resolve) => setTimeout(resolve, mil
 
 let ending = false;
 const commands = new Set();
+const finishing = new Set();
 
 /** Whether this process is on its way out, and starts nothing any more. */
 export function isEnding() {
   return ending;
 }
 
-/** From now on nothing is started; the commands under way are asked to end. */
-export function endCommands() {
+/**
+ * From now on nothing is started. The commands under way are asked to end, save those that must not
+ * be cut short; these are waited for.
+ */
+export async function endCommands() {
   ending = true;
   for (const child of commands) child.kill('SIGTERM');
+  await Promise.all([...finishing].map((child) => once(child, 'exit')));
 }
 
 /**
@@ -50,14 +56,15 @@ function runTo(command, args, { cwd, env, finishes = false }, output) {
     env: env ?? process.env,
     stdio: ['ignore', output, output === 'pipe' ? 'inherit' : output],
   });
-  if (!finishes) commands.add(child);
+  const set = finishes ? finishing : commands;
+  set.add(child);
   let written = '';
   child.stdout?.setEncoding('utf8').on('data', (part) => {
     written += part;
   });
   return new Promise((resolve) => {
     const end = (status) => {
-      commands.delete(child);
+      set.delete(child);
       resolve({ status, output: written });
     };
     child.once('error', () => end(127));

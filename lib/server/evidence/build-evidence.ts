@@ -60,7 +60,7 @@ async function evidenceRun(
       preparation: run.preparation,
       ...(run.direction ? { direction: run.direction } : {}),
       ...(verdict ? { verdict } : {}),
-      ...intervals(computed?.answer ?? null),
+      ...intervals(computed?.answer ?? standing?.answer ?? null),
     },
   };
 }

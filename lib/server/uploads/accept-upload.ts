@@ -1,0 +1,183 @@
+import { createHash } from 'node:crypto';
+import { and, eq } from 'drizzle-orm';
+import { v7 as uuid } from 'uuid';
+import type { Conn, Transaction } from '@/db/client';
+import { booking, run, session, study, upload, user } from '@/db/schema';
+import type { UploadMapping } from '@/lib/contracts/forms/readings';
+import { stampText } from '@/lib/format';
+import type { ActionContext } from '../action';
+import { audit } from '../audit';
+import { AppError, notFound } from '../errors';
+import { askEvidence } from '../evidence/ask-evidence';
+import { holdFile } from '../files';
+import { importReadings, type ImportedReadings } from './import-readings';
+import { insertReadings } from './insert-readings';
+
+export type UploadInput = {
+  studyId: string;
+  runId: string;
+  sessionId: string | null;
+  mapping: UploadMapping;
+  fileName: string;
+  bytes: Uint8Array;
+};
+
+/** Problems that are kept with an upload and shown row by row; all of them are counted. */
+const MOST_PROBLEMS = 500;
+
+type Context = Pick<ActionContext, 'db' | 'member' | 'now'>;
+type Target = Awaited<ReturnType<typeof targetOf>>;
+
+/** The run that the readings belong to, of this lab and study, with its setting. */
+async function targetOf(conn: Conn, labId: string, input: UploadInput) {
+  const [found] = await conn
+    .select({ study, run })
+    .from(run)
+    .innerJoin(study, eq(study.id, run.studyId))
+    .where(and(eq(run.id, input.runId), eq(run.studyId, input.studyId), eq(run.labId, labId)));
+  if (!found) throw notFound('run');
+  const { setAt } = found.run;
+  if (!setAt) {
+    throw new AppError(
+      'not-possible',
+      `The dose of run ${found.run.number} has not been set yet, so its readings have no time to count from.`,
+      { at: 'runId', mend: 'Do the session that sets the dose first, or choose another run.' },
+    );
+  }
+  if (input.sessionId) {
+    const [own] = await conn
+      .select({ id: session.id })
+      .from(session)
+      .innerJoin(booking, eq(booking.id, session.bookingId))
+      .where(
+        and(
+          eq(session.id, input.sessionId),
+          eq(session.labId, labId),
+          eq(booking.runId, found.run.id),
+        ),
+      );
+    if (!own) throw notFound('session of this run');
+  }
+  return { ...found, setAt };
+}
+
+/** Refuses content that this study has already, naming who uploaded it, when and for which run. */
+async function refuseKnown(conn: Conn, of: Context['member'], studyId: string, sha256: string) {
+  const [known] = await conn
+    .select({ upload, by: user.name, number: run.number })
+    .from(upload)
+    .innerJoin(user, eq(user.id, upload.byId))
+    .innerJoin(run, eq(run.id, upload.runId))
+    .where(
+      and(eq(upload.labId, of.labId), eq(upload.studyId, studyId), eq(upload.sha256, sha256)),
+    );
+  if (!known) return;
+  const when = stampText(known.upload.createdAt, of.lab.timeZone);
+  throw new AppError(
+    'conflict',
+    `${known.by} uploaded this file on ${when} as “${known.upload.fileName}”, for run ${known.number}. Nothing was kept twice.`,
+    { at: 'file', mend: 'Choose another file; the readings of this one are in the study.' },
+  );
+}
+
+const isDuplicate = (error: unknown): boolean => {
+  const { code, cause } = (error ?? {}) as { code?: string; cause?: unknown };
+  return code === 'ER_DUP_ENTRY' || (cause !== undefined && isDuplicate(cause));
+};
+
+type Parsed = { target: Target; imported: ImportedReadings; sha256: string };
+
+async function store(
+  tx: Transaction,
+  context: Context,
+  input: UploadInput,
+  { target, imported, sha256 }: Parsed,
+) {
+  const { member, now } = context;
+  const { labId } = member;
+  // One upload of a run at a time, so that the same rows in two files are seen as the same.
+  const [locked] = await tx.select().from(run).where(eq(run.id, target.run.id)).for('update');
+  if (locked?.setAt?.getTime() !== target.setAt.getTime()) {
+    throw new AppError('conflict', 'The setting of this run was changed meanwhile.', {
+      mend: 'Reload the page and upload again.',
+    });
+  }
+  const uploadId = uuid();
+  const row = {
+    id: uploadId,
+    labId,
+    studyId: target.study.id,
+    runId: target.run.id,
+    sessionId: input.sessionId,
+    fileName: input.fileName,
+    bytes: input.bytes.byteLength,
+    sha256,
+    mapping: input.mapping,
+    rowsKept: 0,
+    rowsRefused: imported.refused,
+    problems: imported.problems.slice(0, MOST_PROBLEMS),
+    byId: member.userId,
+    createdAt: now,
+  };
+  await tx.insert(upload).values(row);
+  const inserted = await insertReadings(tx, {
+    labId,
+    runId: target.run.id,
+    uploadId,
+    byId: member.userId,
+    now,
+    rows: imported.rows,
+  });
+  await tx.update(upload).set({ rowsKept: inserted.kept }).where(eq(upload.id, uploadId));
+  await audit(tx, {
+    labId,
+    actorId: member.userId,
+    event: 'readings.uploaded',
+    studyId: target.study.id,
+    subjectId: uploadId,
+    data: {
+      runId: target.run.id,
+      fileName: input.fileName,
+      sha256,
+      kept: inserted.kept,
+      known: inserted.known,
+      refused: imported.refused,
+    },
+  });
+  const asked = await askEvidence(tx, {
+    labId,
+    studyId: target.study.id,
+    askedBy: member.userId,
+  });
+  return { uploadId, ...inserted, jobId: asked?.jobId ?? null };
+}
+
+/**
+ * Takes a file of readings in: the file as it is, its good rows as readings, its bad rows listed with
+ * what is wrong and how to mend it. All of it or, on any failure, nothing.
+ */
+export async function acceptUpload(context: Context, input: UploadInput) {
+  const { db, member } = context;
+  const target = await targetOf(db, member.labId, input);
+  const sha256 = createHash('sha256').update(input.bytes).digest('hex');
+  await refuseKnown(db, member, input.studyId, sha256);
+  const imported = importReadings(input, {
+    setAt: target.setAt,
+    timeZone: member.lab.timeZone,
+    now: context.now,
+  });
+  const file = await holdFile({ labId: member.labId, sha256 }, input.bytes);
+  try {
+    const stored = await db.transaction(async (tx) => {
+      const done = await store(tx, context, input, { target, imported, sha256 });
+      await file.keep();
+      return done;
+    });
+    const { refused, remarks } = imported;
+    return { ...stored, refused, remarks, problems: imported.problems.slice(0, MOST_PROBLEMS) };
+  } catch (error) {
+    await file.drop();
+    if (isDuplicate(error)) await refuseKnown(db, member, input.studyId, sha256);
+    throw error;
+  }
+}
