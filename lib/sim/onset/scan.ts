@@ -223,6 +223,7 @@ function examineEnd(context: BranchContext, scan: Scan, end: Node): void {
     if (!found || Math.abs(found.control - end.control) > 0.1 * width) continue;
     const near = found.x.map((v, i) => v - x[i]!);
     if (context.length(near, 0, end.scale) > 0.1) continue;
+    if (!context.problem.isPhysical(found.x, end.scale)) continue;
     const report = inspectCrossing(context, found);
     if (!report || report.others > 0) continue;
     // A centre keeps its pair on the axis for every control: nothing crosses.
