@@ -17,6 +17,7 @@ import { inspectCrossing } from './onset/locate';
 import { criticalityAt } from './onset/lyapunov';
 import type { Onset } from './onset/scan';
 import { compileRequestModel } from './request-model';
+import { FINE_STEP } from './steady/node';
 import { propagate } from './uncertainty/propagate';
 
 export interface PredictHooks {
@@ -42,7 +43,10 @@ export function predict(request: PredictRequest, hooks: PredictHooks = {}): Pred
   checkDelays(system, system.values, range.controlIndex, range.from, range.to);
   const total = request.draws + CYCLES_SHARE;
   hooks.progress?.(0, total, 'following the steady state');
-  const analysis = analyse(system, system.values, range, system.start, hooks.cancelled);
+  const analysis = analyse(system, system.values, range, system.start, {
+    largestStep: FINE_STEP,
+    cancelled: hooks.cancelled,
+  });
   stopIfCancelled(hooks);
   const notes: Note[] = analysisNotes(analysis);
   const branch = branchAnswer(analysis);

@@ -31,12 +31,18 @@ export function analyse(
   parameters: Float64Array,
   range: Range,
   guess: Float64Array,
-  cancelled?: () => boolean,
+  options: { largestStep?: number; cancelled?: () => boolean } = {},
 ): Analysis {
   const problem = new Problem(system, parameters, range.controlIndex);
-  const context = new BranchContext(problem, range.from, range.to, system.start);
+  const context = new BranchContext(
+    problem,
+    range.from,
+    range.to,
+    system.start,
+    options.largestStep,
+  );
   const equilibrium = findEquilibrium(problem, guess, range.from, context.seen);
-  const branch = followBranch(context, equilibrium.x, cancelled);
+  const branch = followBranch(context, equilibrium.x, options.cancelled);
   if (!branch) {
     throw new EngineError(
       'no-steady-state',

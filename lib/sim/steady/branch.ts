@@ -4,8 +4,7 @@ import { newton, scaledSize } from './newton';
 import { type BranchContext, borderedJacobian, makeNode, type Node } from './node';
 import { stateScale } from './problem';
 
-/** Scaled arclength of a step: at most this, at least that. */
-const LARGEST_STEP = 0.04;
+/** Least scaled arclength of a step. */
 const SMALLEST_STEP = 1e-7;
 /** A turn of the tangent above this (cosine) halves the step. */
 const TURN = Math.cos(0.25);
@@ -33,7 +32,7 @@ export function followBranch(
   if (!first) return null;
   const nodes = [first];
   const notes: Note[] = [];
-  let h = LARGEST_STEP / 8;
+  let h = context.largestStep / 8;
   while (nodes.length < NODE_CAP) {
     if (cancelled?.()) break;
     const last = nodes[nodes.length - 1]!;
@@ -64,7 +63,7 @@ export function followBranch(
       return { nodes, notes, end: 'physical' };
     }
     nodes.push(node);
-    h = Math.min(LARGEST_STEP, step.h * (step.easy ? 1.6 : 1));
+    h = Math.min(context.largestStep, step.h * (step.easy ? 1.6 : 1));
   }
   const last = nodes[nodes.length - 1]!;
   notes.push({
@@ -156,7 +155,7 @@ function endNode(context: BranchContext, a: Node, b: Node, control: number): Nod
   const outcome = newton(context.problem, x, control, Float64Array.from(context.seen), 20);
   if (outcome !== 'converged') return null;
   const near = x.map((v, i) => v - (a.x[i]! + share * (b.x[i]! - a.x[i]!)));
-  if (scaledSize(near, scale) > 0.5 * LARGEST_STEP * Math.sqrt(x.length)) return null;
+  if (scaledSize(near, scale) > 0.5 * context.largestStep * Math.sqrt(x.length)) return null;
   return makeNode(context, x, control, a.tangent, a.controlSlope);
 }
 

@@ -21,6 +21,11 @@ export interface Node {
   readonly complex: readonly TrackedRoot[];
 }
 
+/** A step that loses nothing smooth: four hundredths of the range, or of a variable's size. */
+export const COARSE_STEP = 0.04;
+/** For the answer itself: narrower features are met, and the line is smooth to look at. */
+export const FINE_STEP = 0.0125;
+
 /** What the steps along one branch share. */
 export class BranchContext {
   readonly work: Characteristic;
@@ -32,6 +37,8 @@ export class BranchContext {
     readonly from: number,
     readonly to: number,
     start: Float64Array,
+    /** Largest scaled arclength of a step. */
+    readonly largestStep = COARSE_STEP,
   ) {
     this.work = new Characteristic(problem);
     this.change = new ModeChange(problem, this.work);
