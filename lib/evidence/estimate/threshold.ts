@@ -17,18 +17,22 @@ export type ThresholdOptions = {
   drop?: number;
   /** Weak prior that bounds the slope: sd of slope × smallest gap; Infinity leaves it out. */
   slopeSd?: number;
+  /** Share of verdicts that are wrong whatever the control (default 0.03; 0 gives the plain logistic). */
+  lapse?: number;
 };
 
+/** Slope × range is at least this: the change from steady to sustained fits into the levels tried. */
+const LEAST_SLOPE = 4;
 const NINETY = 2.705543 / 2;
 
 /**
  * Logistic threshold P(sustained) = 1/(1 + e^(−b(x − m))), b > 0, with profile-likelihood interval
- * for m. A normal penalty on b keeps the fit finite where verdicts separate perfectly (the
+ * for m. A small share of wrong verdicts keeps one slip from flattening the curve. A normal penalty on b keeps the fit finite where verdicts separate perfectly (the
  * plain maximum then does not exist: Albert & Anderson 1984, Biometrika 71:1). Null with fewer than
  * two control values or only one kind of outcome.
  */
 export function fitThreshold(cells: Cell[], options: ThresholdOptions = {}): ThresholdFit | null {
-  const { drop = NINETY, slopeSd = 8 } = options;
+  const { drop = NINETY, slopeSd = 8, lapse = 0.03 } = options;
   const xs = [...new Set(cells.map((c) => c.x))].sort((a, b) => a - b);
   const hits = cells.reduce((s, c) => s + c.sustained, 0);
   const total = cells.reduce((s, c) => s + c.total, 0);
@@ -38,8 +42,8 @@ export function fitThreshold(cells: Cell[], options: ThresholdOptions = {}): Thr
   const penalty = (b: number) => (Number.isFinite(slopeSd) ? 0.5 * ((b * gap) / slopeSd) ** 2 : 0);
   const best = (m: number) =>
     maximise(
-      (s) => logLikelihood(cells, m, Math.exp(s)) - penalty(Math.exp(s)),
-      [Math.log(0.05 / range), Math.log(60 / gap)],
+      (s) => logLikelihood(cells, m, Math.exp(s), lapse) - penalty(Math.exp(s)),
+      [Math.log((Number.isFinite(slopeSd) ? LEAST_SLOPE : 0.05) / range), Math.log(60 / gap)],
     );
   const reach = 2 * range;
   const [from, to] = [xs[0]! - reach, xs[xs.length - 1]! + reach];
@@ -81,11 +85,13 @@ export function asInterval(fit: ThresholdFit): Interval | null {
   return { value: fit.value, low: fit.low, high: fit.high };
 }
 
-function logLikelihood(cells: Cell[], m: number, b: number): number {
+function logLikelihood(cells: Cell[], m: number, b: number, lapse: number): number {
   let sum = 0;
   for (const c of cells) {
     const u = b * (c.x - m);
-    sum -= c.sustained * softplus(-u) + (c.total - c.sustained) * softplus(u);
+    const hit = lapse > 0 ? Math.log(lapse + (1 - 2 * lapse) / (1 + Math.exp(-u))) : -softplus(-u);
+    const miss = lapse > 0 ? Math.log(lapse + (1 - 2 * lapse) / (1 + Math.exp(u))) : -softplus(u);
+    sum += c.sustained * hit + (c.total - c.sustained) * miss;
   }
   return sum;
 }

@@ -29,65 +29,127 @@ export const NO_DRIFT = { driftVariance: 0, driftRate: 1 } as const;
  * concentrated out, not below `floor`². Readings may be uneven. O(n) for a fixed model.
  */
 export function makeLikelihood(t: Float64Array, y: Float64Array, trend: Columns, floor: number) {
-  const n = t.length;
-  const width = trend.length + 3;
-  const state = new Float64Array(3 * width);
-  const innovation = new Float64Array(width);
-  const cross = new Float64Array(width * width);
+  const filter = new AugmentedFilter(t, y, trend);
   return (d: Dynamics): Likelihood | null => {
-    const columns = d.frequency === null ? width - 2 : width;
-    state.fill(0);
-    cross.fill(0);
-    if (d.frequency !== null) {
-      state[3 * (width - 2)] = 1;
-      state[3 * (width - 1) + 1] = 1;
-    }
+    const columns = filter.columnsFor(d);
+    const logDet = filter.run(d, columns);
+    return concentrate(filter.cross, filter.width, columns, t.length, logDet, floor);
+  };
+}
+
+/** One pass over the readings; its work arrays are kept from one model to the next. */
+class AugmentedFilter {
+  readonly width: number;
+  /** Cross products of the innovations of y (column 0), trend and u(0), each over its variance. */
+  readonly cross: Float64Array;
+  private readonly state: Float64Array;
+  private readonly innovation: Float64Array;
+  /** Covariance of (u₁, u₂, o): 00, 01, 11, 02, 12, 22. */
+  private readonly p = new Float64Array(6);
+  private readonly inputs: Float64Array[];
+
+  constructor(
+    private readonly t: Float64Array,
+    y: Float64Array,
+    trend: Columns,
+  ) {
+    this.width = trend.length + 3;
+    this.cross = new Float64Array(this.width * this.width);
+    this.state = new Float64Array(3 * this.width);
+    this.innovation = new Float64Array(this.width);
+    this.inputs = [y, ...trend];
+  }
+
+  columnsFor(d: Dynamics): number {
+    return d.frequency === null ? this.width - 2 : this.width;
+  }
+
+  /** Runs the filter; gives Σ ln F. Equal gaps reuse their exponentials and turn the phase. */
+  run(d: Dynamics, columns: number): number {
+    const { t, p } = this;
+    this.start(d);
     const omega = 2 * Math.PI * (d.frequency ?? 0);
-    let [p00, p01, p11, p02, p12, p22] = [0, 0, 0, 0, 0, d.driftVariance];
-    let logDet = 0;
-    for (let i = 0; i < n; i++) {
+    let [gap, e, g, input, turnCos, turnSin] = [-1, 1, 1, 0, 1, 0];
+    let [c, s] =
+      d.frequency === null ? [0, 0] : [Math.cos(omega * t[0]!), -Math.sin(omega * t[0]!)];
+    let [logDet, det] = [0, 1];
+    for (let i = 0; i < t.length; i++) {
       if (i > 0) {
         const dt = t[i]! - t[i - 1]!;
-        const e = Math.exp(d.growth * dt);
-        const g = Math.exp(-d.driftRate * dt);
-        const input = d.drive * increment(d.growth, dt, e);
-        p00 = e * e * p00 + input;
-        p11 = e * e * p11 + input;
-        p01 *= e * e;
-        p02 *= e * g;
-        p12 *= e * g;
-        p22 = g * g * p22 + d.driftVariance * (1 - g * g);
-        for (let j = 0; j < columns; j++) {
-          state[3 * j]! *= e;
-          state[3 * j + 1]! *= e;
-          state[3 * j + 2]! *= g;
+        if (Math.abs(dt - gap) > 1e-13) {
+          gap = dt;
+          e = Math.exp(d.growth * dt);
+          g = Math.exp(-d.driftRate * dt);
+          input = d.drive * increment(d.growth, dt, e);
+          turnCos = Math.cos(omega * dt);
+          turnSin = -Math.sin(omega * dt);
         }
+        [c, s] = [c * turnCos - s * turnSin, s * turnCos + c * turnSin];
+        this.predict(e, g, input, d.driftVariance, columns);
       }
-      const c = d.frequency === null ? 0 : Math.cos(omega * t[i]!);
-      const s = d.frequency === null ? 0 : -Math.sin(omega * t[i]!);
-      const h0 = p00 * c + p01 * s + p02;
-      const h1 = p01 * c + p11 * s + p12;
-      const h2 = p02 * c + p12 * s + p22;
-      const f = h0 * c + h1 * s + h2 + 1;
-      logDet += Math.log(f);
-      for (let j = 0; j < columns; j++) {
-        const x = j === 0 ? y[i]! : j <= trend.length ? trend[j - 1]![i]! : 0;
-        const v = x - state[3 * j]! * c - state[3 * j + 1]! * s - state[3 * j + 2]!;
-        innovation[j] = v;
-        state[3 * j]! += (h0 / f) * v;
-        state[3 * j + 1]! += (h1 / f) * v;
-        state[3 * j + 2]! += (h2 / f) * v;
-        for (let k = 0; k <= j; k++) cross[j * width + k]! += (v * innovation[k]!) / f;
+      det *= this.update(i, c, s, columns);
+      if (det > 1e200 || det < 1e-200) {
+        logDet += Math.log(det);
+        det = 1;
       }
-      p00 -= (h0 * h0) / f;
-      p01 -= (h0 * h1) / f;
-      p11 -= (h1 * h1) / f;
-      p02 -= (h0 * h2) / f;
-      p12 -= (h1 * h2) / f;
-      p22 -= (h2 * h2) / f;
     }
-    return concentrate(cross, width, columns, n, logDet, floor);
-  };
+    return p.every(Number.isFinite) ? logDet + Math.log(det) : Number.NaN;
+  }
+
+  private start(d: Dynamics): void {
+    this.state.fill(0);
+    this.cross.fill(0);
+    this.p.fill(0);
+    this.p[5] = d.driftVariance;
+    if (d.frequency === null) return;
+    this.state[3 * (this.width - 2)] = 1;
+    this.state[3 * (this.width - 1) + 1] = 1;
+  }
+
+  private predict(e: number, g: number, input: number, drift: number, columns: number): void {
+    const { p, state } = this;
+    const ee = e * e;
+    p[0] = ee * p[0]! + input;
+    p[1] = ee * p[1]!;
+    p[2] = ee * p[2]! + input;
+    p[3] = e * g * p[3]!;
+    p[4] = e * g * p[4]!;
+    p[5] = g * g * p[5]! + drift * (1 - g * g);
+    for (let k = 0; k < 3 * columns; k += 3) {
+      state[k] = state[k]! * e;
+      state[k + 1] = state[k + 1]! * e;
+      state[k + 2] = state[k + 2]! * g;
+    }
+  }
+
+  /** Takes reading i in; gives the innovation's variance over s². */
+  private update(i: number, c: number, s: number, columns: number): number {
+    const { p, state, innovation, cross, inputs, width } = this;
+    const h0 = p[0]! * c + p[1]! * s + p[3]!;
+    const h1 = p[1]! * c + p[2]! * s + p[4]!;
+    const h2 = p[3]! * c + p[4]! * s + p[5]!;
+    const f = h0 * c + h1 * s + h2 + 1;
+    const [k0, k1, k2] = [h0 / f, h1 / f, h2 / f];
+    for (let j = 0; j < columns; j++) {
+      const x = j < inputs.length ? inputs[j]![i]! : 0;
+      const v = x - state[3 * j]! * c - state[3 * j + 1]! * s - state[3 * j + 2]!;
+      innovation[j] = v;
+      state[3 * j] = state[3 * j]! + k0 * v;
+      state[3 * j + 1] = state[3 * j + 1]! + k1 * v;
+      state[3 * j + 2] = state[3 * j + 2]! + k2 * v;
+      const scaled = v / f;
+      for (let k = 0; k <= j; k++) {
+        cross[j * width + k] = cross[j * width + k]! + scaled * innovation[k]!;
+      }
+    }
+    p[0] = p[0]! - h0 * k0;
+    p[1] = p[1]! - h0 * k1;
+    p[2] = p[2]! - h1 * k1;
+    p[3] = p[3]! - h0 * k2;
+    p[4] = p[4]! - h1 * k2;
+    p[5] = p[5]! - h2 * k2;
+    return f;
+  }
 }
 
 /** ∫ e^(2σ(dt − s)) ds over one step. */
