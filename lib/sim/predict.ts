@@ -15,7 +15,7 @@ import { type Analysis, analyse, analysisNotes, type Range } from './onset/analy
 import { coexistenceWindow } from './onset/coexistence';
 import { inspectCrossing } from './onset/locate';
 import { criticalityAt } from './onset/lyapunov';
-import type { Onset } from './onset/scan';
+import { type Onset, sideOf } from './onset/scan';
 import { compileRequestModel } from './request-model';
 import { FINE_STEP } from './steady/node';
 import { propagate } from './uncertainty/propagate';
@@ -126,7 +126,7 @@ function describeOnset(
     period: (2 * Math.PI) / onset.omega,
     criticality: kind.criticality,
     lyapunov: kind.lyapunov,
-    oscillates: onset.growthSlope > 0 ? 'above' : 'below',
+    oscillates: sideOf(onset),
     growthSlope: onset.growthSlope,
     coexistence:
       kind.criticality === 'subcritical'

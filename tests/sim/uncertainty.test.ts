@@ -4,7 +4,7 @@ import { compileModel } from '@/lib/sim/equations/compile';
 import { analyse } from '@/lib/sim/onset/analyse';
 import { predict } from '@/lib/sim/predict';
 import { normalQuantile } from '@/lib/sim/random/normal-quantile';
-import { matchOnsets } from '@/lib/sim/uncertainty/propagate';
+import { matchOnsets } from '@/lib/sim/uncertainty/match-onsets';
 import { quantile } from '@/lib/sim/uncertainty/quantile';
 import { sampler } from '@/lib/sim/uncertainty/sample';
 import cases from '../reference/check-values.json';

@@ -1,3 +1,4 @@
+import type { Side } from '@/lib/contracts';
 import { midNode } from '../steady/branch';
 import type { BranchContext, Node, TrackedRoot } from '../steady/node';
 import { type Crossing, type CrossingReport, inspectCrossing, locateCrossing } from './locate';
@@ -5,6 +6,11 @@ import { type Crossing, type CrossingReport, inspectCrossing, locateCrossing } f
 /** An onset: stability changes here because a complex pair crosses while all else is stable. */
 export interface Onset extends Crossing {
   readonly growthSlope: number;
+}
+
+/** The side of the onset on which the steady state is unstable. */
+export function sideOf(onset: Pick<Onset, 'growthSlope'>): Side {
+  return onset.growthSlope > 0 ? 'above' : 'below';
 }
 
 /** Something else that happens to stability along the branch. */

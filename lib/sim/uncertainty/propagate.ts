@@ -1,9 +1,9 @@
-import { EngineError, type OnsetSpread, type PredictRequest, type Side } from '@/lib/contracts';
+import { EngineError, type OnsetSpread, type PredictRequest } from '@/lib/contracts';
 import { controlToDose } from '../dose-map';
 import { checkDelays } from '../equations/check-delays';
 import type { CompiledSystem } from '../equations/types';
 import { type Analysis, analyse, type Range } from '../onset/analyse';
-import type { Onset } from '../onset/scan';
+import { matchOnsets } from './match-onsets';
 import { quantile } from './quantile';
 import { type Draw, sampler } from './sample';
 import { WarmStart } from './warm-start';
@@ -13,13 +13,12 @@ export interface PropagateHooks {
   cancelled?(): boolean;
 }
 
-export const sideOf = (o: Onset): Side => (o.growthSlope > 0 ? 'above' : 'below');
-
 /**
  * The onset's distribution, given the spreads: one entry for each nominal onset.
  *
  * Each draw is solved by Newton from a first-order prediction and certified against the whole spectrum;
- * where that fails for any onset, or the onset left the range, the draw gets a full scan of its own.
+ * where that fails for any onset the draw gets a full scan of its own. An onset that left the range counts
+ * as none when the stability of the range's ends shows that no other came in.
  * Draws without a steady state, with a negative delay or leaving the physical range count in `none`.
  */
 export function propagate(
@@ -90,19 +89,6 @@ function isUsable(system: CompiledSystem, range: Range, p: Float64Array): boolea
     if (error instanceof EngineError) return false;
     throw error;
   }
-}
-
-/** The k-th onset of a side goes with the k-th nominal onset of that side. */
-export function matchOnsets(nominal: readonly Onset[], drawn: readonly Onset[]): (number | null)[] {
-  const queue = { above: [] as number[], below: [] as number[] };
-  for (const o of drawn) queue[sideOf(o)].push(o.control);
-  const next = { above: 0, below: 0 };
-  return nominal.map((o) => {
-    const side = sideOf(o);
-    const value = queue[side][next[side]];
-    next[side] += 1;
-    return value ?? null;
-  });
 }
 
 function summarise(

@@ -1,9 +1,11 @@
 import type { CompiledSystem } from '../equations/types';
 import type { Analysis, Range } from '../onset/analyse';
 import { type Crossing, inspectCrossing, locateCrossing } from '../onset/locate';
-import type { Onset } from '../onset/scan';
+import { type Onset, sideOf } from '../onset/scan';
 import { BranchContext } from '../steady/node';
 import { Problem, stateScale } from '../steady/problem';
+import { expectedEnds, stableEnds } from './end-states';
+import { matchOnsets } from './match-onsets';
 import type { Draw, Sampler } from './sample';
 
 /** Half-width, in standard deviations, of the differences that give the first-order prediction. */
@@ -59,8 +61,12 @@ export class WarmStart {
     return { rows };
   }
 
-  /** The draw's onset values in nominal order, or null where a full scan must decide. */
-  solve(draw: Draw): number[] | null {
+  /**
+   * The draw's onset values in nominal order, null for one that moved out of the range; or null where a
+   * full scan must decide.
+   */
+  solve(draw: Draw): (number | null)[] | null {
+    const { from, to } = this.range;
     const values: number[] = [];
     const onsets = this.nominal.scan.onsets;
     for (let k = 0; k < onsets.length; k++) {
@@ -69,7 +75,18 @@ export class WarmStart {
       if (k > 0 && !(value > values[k - 1]!)) return null;
       values.push(value);
     }
-    return values;
+    const inside = (v: number) => v >= from && v <= to;
+    if (values.every(inside)) return values;
+    // One left the range: that no other came in shows in the stability of the range's two ends.
+    const placed = values.map((value, k) => ({ value, oscillates: sideOf(onsets[k]!) }));
+    const expected = expectedEnds(placed, from, to);
+    const seen = expected ? stableEnds(this.context, this.nominal) : null;
+    if (!expected || !seen || expected.from !== seen.from || expected.to !== seen.to) return null;
+    const drawn = values.map((control, k) => ({ control, growthSlope: onsets[k]!.growthSlope }));
+    return matchOnsets(
+      onsets,
+      drawn.filter((o) => inside(o.control)),
+    );
   }
 
   private solveOne(onset: Onset, gradient: Gradient, draw: Draw): number | null {
@@ -93,10 +110,8 @@ export class WarmStart {
     return { x: out.slice(0, n), omega: out[n]!, control: out[n + 1]! };
   }
 
-  /** In range, physical, everything else stable, crossing the same way. */
+  /** Physical, everything else stable, crossing the same way. */
   private isSame(onset: Onset, found: Crossing): boolean {
-    const { from, to } = this.range;
-    if (found.control < from || found.control > to) return false;
     const scale = stateScale(found.x, Float64Array.from(this.context.seen));
     if (!this.problem.isPhysical(found.x, scale)) return false;
     const report = inspectCrossing(this.context, found);
