@@ -45,7 +45,7 @@ export function BenchCard(props: BenchCardProps) {
       <SessionRule {...props.rule} />
       <main
         id="content"
-        className="mx-auto grid w-full max-w-[820px] flex-1 grid-cols-1 gap-6 px-4 pt-6 pb-6 tablet:grid-rows-[1fr_auto] tablet:px-8 tablet:pb-2.5 desk:max-w-[1440px] desk:grid-cols-[minmax(0,1fr)_444px] desk:grid-rows-1 desk:gap-x-16 desk:px-16"
+        className="mx-auto grid w-full max-w-[820px] flex-1 grid-cols-1 gap-6 px-4 pt-6 pb-6 tablet:grid-rows-[1fr_auto] tablet:px-8 tablet:pb-[14px] desk:max-w-[1440px] desk:grid-cols-[minmax(0,1fr)_444px] desk:grid-rows-1 desk:gap-x-16 desk:px-16"
       >
         <div className="flex min-w-0 flex-col">
           <BenchHead {...props.head} />

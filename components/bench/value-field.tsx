@@ -22,16 +22,18 @@ export type ValueFieldProps = {
 const key =
   'press size-20 shrink-0 rounded-key border-[1.5px] border-edge bg-plate text-[36px] leading-none font-semibold hover:border-ink hover:bg-well';
 
+/** The value one step on, held between its bounds, with the decimals of step and value. */
+export function moved({ value, step, min, max }: ValueFieldProps, direction: 1 | -1): string {
+  const now = Number(value);
+  const from = Number.isFinite(now) && value.trim() !== '' ? now : (min ?? 0);
+  const held = Math.min(Math.max(from + direction * step, min ?? -Infinity), max ?? Infinity);
+  return held.toFixed(Math.max(decimalsOfStep(step), decimalsIn(value)));
+}
+
 /** One figure with − and +, all 80 px high, for gloved hands. */
 export function ValueField(props: ValueFieldProps) {
-  const { id, label, unit, value, onChange, step, usual, problem } = props;
-  const move = (direction: 1 | -1) => {
-    const now = Number(value);
-    const from = Number.isFinite(now) && value.trim() !== '' ? now : (props.min ?? 0);
-    const next = from + direction * step;
-    const held = Math.min(Math.max(next, props.min ?? -Infinity), props.max ?? Infinity);
-    onChange(held.toFixed(Math.max(decimalsOfStep(step), decimalsIn(value))));
-  };
+  const { id, label, unit, value, onChange, usual, problem } = props;
+  const move = (direction: 1 | -1) => onChange(moved(props, direction));
   return (
     <div>
       <label htmlFor={id} className="block text-bench text-ink2">
@@ -54,17 +56,8 @@ export function ValueField(props: ValueFieldProps) {
             {unitText(unit)}
           </span>
         </span>
-        <button
-          type="button"
-          className={key}
-          onClick={() => move(-1)}
-          aria-label={`${label}: less`}
-        >
-          {'\u2212'}
-        </button>
-        <button type="button" className={key} onClick={() => move(1)} aria-label={`${label}: more`}>
-          +
-        </button>
+        <StepKey name={`${label}: less`} sign={'\u2212'} onPress={() => move(-1)} />
+        <StepKey name={`${label}: more`} sign="+" onPress={() => move(1)} />
         {usual ? (
           <span id={`${id}-usual`} className="pl-2 text-bench text-ink2">
             {usual}
@@ -81,6 +74,14 @@ export function ValueField(props: ValueFieldProps) {
         </p>
       ) : null}
     </div>
+  );
+}
+
+function StepKey(props: { name: string; sign: string; onPress: () => void }) {
+  return (
+    <button type="button" className={key} onClick={props.onPress} aria-label={props.name}>
+      {props.sign}
+    </button>
   );
 }
 

@@ -1,5 +1,5 @@
-import { niceStep } from '@/components/ribbon/scale';
-import { decimalsOfStep, fixed } from '@/lib/format';
+import { niceStep, tickText } from '@/components/ribbon/scale';
+import { decimalsOfStep } from '@/lib/format';
 
 export type AxisTick = { value: number; text: string };
 export type Axis = { domain: [number, number]; ticks: AxisTick[] };
@@ -37,7 +37,7 @@ export function axisOver(values: readonly number[], withZero: boolean, steps = 8
 
 function tick(value: number, step: number): AxisTick {
   const clean = Math.abs(value) < step * 1e-9 ? 0 : value;
-  return { value: clean, text: clean === 0 ? '0' : fixed(clean, decimalsOfStep(step)) };
+  return { value: clean, text: tickText(clean, decimalsOfStep(step)) };
 }
 
 /** Moves marks at one place apart: the shift of the i-th of n, px. */

@@ -1,11 +1,17 @@
 'use client';
 
-import { Line } from 'recharts';
 import { ticksOf } from '@/components/ribbon/scale';
 import { figure, unitText } from '@/lib/format';
 import { axisOver } from './axis';
 import { ChartFrame, FOOT, PAD } from './chart-frame';
-import { Name, type Observation, ObservationMarks, OnsetLines, predictionPieces } from './layers';
+import {
+  Name,
+  type Observation,
+  ObservationMarks,
+  OnsetLines,
+  PredictionLines,
+  predictionPieces,
+} from './layers';
 
 export type GrowthChartProps = {
   from: number;
@@ -52,20 +58,7 @@ export function GrowthChart(props: GrowthChartProps) {
             stroke="var(--ink)"
             fill="none"
           />
-          {pieces.map((piece) => (
-            <Line
-              key={`${piece.points[0]!.x} ${piece.points[0]!.y} ${piece.stable}`}
-              data={piece.points}
-              dataKey="y"
-              type="linear"
-              stroke="var(--ink2)"
-              strokeWidth={1.5}
-              strokeDasharray={piece.stable ? undefined : '1.5 3'}
-              dot={false}
-              activeDot={false}
-              isAnimationActive={false}
-            />
-          ))}
+          <PredictionLines pieces={pieces} />
           <OnsetLines values={props.onsets} places={places} base={base} />
           <Name x={width - PAD} y={places.y(0) - 6} end>
             grows

@@ -1,6 +1,5 @@
 'use client';
 
-import { Line } from 'recharts';
 import { ticksOf } from '@/components/ribbon/scale';
 import { figure, unitText } from '@/lib/format';
 import { axisFromZero } from './axis';
@@ -11,6 +10,7 @@ import {
   type Observation,
   ObservationMarks,
   OnsetLines,
+  PredictionLines,
   predictionPieces,
 } from './layers';
 
@@ -61,20 +61,7 @@ export function JoinedChart(props: JoinedChartProps) {
       {(places, width) => (
         <>
           <Brackets brackets={props.observed} places={places} base={base} />
-          {pieces.map((piece) => (
-            <Line
-              key={`${piece.points[0]!.x} ${piece.stable}`}
-              data={piece.points}
-              dataKey="y"
-              type="linear"
-              stroke="var(--ink2)"
-              strokeWidth={1.5}
-              strokeDasharray={piece.stable ? undefined : '1.5 3'}
-              dot={false}
-              activeDot={false}
-              isAnimationActive={false}
-            />
-          ))}
+          <PredictionLines pieces={pieces} />
           <OnsetLines values={props.onsets} places={places} base={base} />
           {pieces.length > 0 && width >= NAME_FROM ? (
             <CurveName {...props} places={places} base={base} />

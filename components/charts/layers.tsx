@@ -1,5 +1,6 @@
 'use client';
 
+import { Line } from 'recharts';
 import { MarkShape } from '@/components/marks/mark-shape';
 import { MARK_COLOUR, type MarkState } from '@/components/marks/states';
 import type { Interval } from '@/lib/contracts';
@@ -58,6 +59,24 @@ export function predictionPieces(
   stable?: readonly boolean[],
 ) {
   return piecesByStability(x, y, stable).filter((piece) => piece.points.length > 1);
+}
+
+/** The pieces as lines of the chart. */
+export function PredictionLines({ pieces }: { pieces: ReturnType<typeof predictionPieces> }) {
+  return pieces.map((piece) => (
+    <Line
+      key={`${piece.points[0]!.x} ${piece.points[0]!.y} ${piece.stable}`}
+      data={piece.points}
+      dataKey="y"
+      type="linear"
+      stroke="var(--ink2)"
+      strokeWidth={1.5}
+      strokeDasharray={piece.stable ? undefined : '1.5 3'}
+      dot={false}
+      activeDot={false}
+      isAnimationActive={false}
+    />
+  ));
 }
 
 export type Observation = {

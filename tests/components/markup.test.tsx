@@ -4,7 +4,7 @@ import { describe, expect, test } from 'vitest';
 import { BenchHead } from '@/components/bench/bench-head';
 import { Countdown } from '@/components/bench/countdown';
 import { ExceptionKeys } from '@/components/bench/exception-keys';
-import { ValueField } from '@/components/bench/value-field';
+import { moved, ValueField } from '@/components/bench/value-field';
 import { FormProblem, NumberField, Select } from '@/components/forms';
 import { DayRule } from '@/components/frame/day-rule';
 import { SignalLine, type Station } from '@/components/frame/signal-line';
@@ -220,6 +220,14 @@ describe('bench', () => {
     const markup = html(<ExceptionKeys onLate={nothing} onSkip={nothing} onNote={nothing} />);
     expect(markup.match(/<button/g)).toHaveLength(3);
     expect(markup).not.toContain('Photo');
+  });
+  test('a step keeps the decimals and stays within the bounds', () => {
+    const field = { id: 'v', label: 'Volume', unit: 'mL', onChange: nothing, step: 0.1 };
+    expect(moved({ ...field, value: '5.0' }, 1)).toBe('5.1');
+    expect(moved({ ...field, value: '5.25' }, -1)).toBe('5.15');
+    expect(moved({ ...field, value: '5.5', max: 5.5 }, 1)).toBe('5.5');
+    expect(moved({ ...field, value: '', min: 2 }, 1)).toBe('2.1');
+    expect(moved({ ...field, value: 'abc' }, 1)).toBe('0.1');
   });
   test('the value field names its − and + keys', () => {
     const markup = html(
