@@ -3,6 +3,7 @@ import { readoutsOfRun, recordOfRun } from '@/db/queries/records';
 import type { JudgeRequest, PredictAnswer, SystemModel } from '@/lib/contracts';
 import { durationText } from '@/lib/format';
 import { minutesPerUnit } from '@/lib/planner/cadence/time-unit';
+import { readoutsOf } from './readouts';
 
 /** Points a run may bring to be judged; above it, readings in succession are averaged. */
 export const MOST_POINTS = 20_000;
@@ -27,7 +28,7 @@ export async function readoutOf(
   model: SystemModel,
 ) {
   const present = await readoutsOfRun(conn, of);
-  const declared = model.readouts?.map((r) => r.symbol) ?? model.variables.map((v) => v.symbol);
+  const declared = readoutsOf(model).map((r) => r.symbol);
   const first = declared.flatMap((symbol) => present.filter((p) => p.readout === symbol))[0];
   return first ?? present[0] ?? null;
 }

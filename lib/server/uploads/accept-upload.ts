@@ -2,15 +2,17 @@ import { createHash } from 'node:crypto';
 import { and, eq } from 'drizzle-orm';
 import { v7 as uuid } from 'uuid';
 import type { Conn, Transaction } from '@/db/client';
+import { latestSystem } from '@/db/queries/systems';
 import { booking, run, session, study, upload, user } from '@/db/schema';
-import type { UploadMapping } from '@/lib/contracts/forms/readings';
+import type { UploadAccount, UploadMapping } from '@/lib/contracts/forms/readings';
 import { stampText } from '@/lib/format';
 import type { ActionContext } from '../action';
 import { audit } from '../audit';
 import { AppError, notFound } from '../errors';
 import { askEvidence } from '../evidence/ask-evidence';
+import { readoutsOf } from '../evidence/readouts';
 import { holdFile } from '../files';
-import { importReadings, type ImportedReadings } from './import-readings';
+import { type ImportedFile, importFile } from './import-file';
 import { insertReadings } from './insert-readings';
 
 export type UploadInput = {
@@ -28,6 +30,18 @@ const MOST_PROBLEMS = 500;
 type Context = Pick<ActionContext, 'db' | 'member' | 'now'>;
 type Target = Awaited<ReturnType<typeof targetOf>>;
 
+/** A column can only be given to a readout that the newest system has. */
+async function assertReadouts(conn: Conn, labId: string, input: UploadInput): Promise<void> {
+  const system = await latestSystem(conn, { labId, studyId: input.studyId });
+  const known = system ? readoutsOf(system.model).map((r) => r.symbol) : [];
+  const strange = input.mapping.valueColumns.find((v) => !known.includes(v.readout));
+  if (!strange) return;
+  throw new AppError('invalid-input', `The system has no readout “${strange.readout}”.`, {
+    at: 'mapping.valueColumns',
+    mend: `Give the column “${strange.column}” to one of ${known.join(', ')}, or add the readout on the System page.`,
+  });
+}
+
 /** The run that the readings belong to, of this lab and study, with its setting. */
 async function targetOf(conn: Conn, labId: string, input: UploadInput) {
   const [found] = await conn
@@ -44,6 +58,7 @@ async function targetOf(conn: Conn, labId: string, input: UploadInput) {
       { at: 'runId', mend: 'Do the session that sets the dose first, or choose another run.' },
     );
   }
+  await assertReadouts(conn, labId, input);
   if (input.sessionId) {
     const [own] = await conn
       .select({ id: session.id })
@@ -68,9 +83,7 @@ async function refuseKnown(conn: Conn, of: Context['member'], studyId: string, s
     .from(upload)
     .innerJoin(user, eq(user.id, upload.byId))
     .innerJoin(run, eq(run.id, upload.runId))
-    .where(
-      and(eq(upload.labId, of.labId), eq(upload.studyId, studyId), eq(upload.sha256, sha256)),
-    );
+    .where(and(eq(upload.labId, of.labId), eq(upload.studyId, studyId), eq(upload.sha256, sha256)));
   if (!known) return;
   const when = stampText(known.upload.createdAt, of.lab.timeZone);
   throw new AppError(
@@ -85,7 +98,7 @@ const isDuplicate = (error: unknown): boolean => {
   return code === 'ER_DUP_ENTRY' || (cause !== undefined && isDuplicate(cause));
 };
 
-type Parsed = { target: Target; imported: ImportedReadings; sha256: string };
+type Parsed = { target: Target; imported: ImportedFile; sha256: string };
 
 async function store(
   tx: Transaction,
@@ -114,8 +127,8 @@ async function store(
     sha256,
     mapping: input.mapping,
     rowsKept: 0,
-    rowsRefused: imported.refused,
-    problems: imported.problems.slice(0, MOST_PROBLEMS),
+    rowsRefused: 0,
+    problems: [],
     byId: member.userId,
     createdAt: now,
   };
@@ -128,7 +141,12 @@ async function store(
     now,
     rows: imported.rows,
   });
-  await tx.update(upload).set({ rowsKept: inserted.kept }).where(eq(upload.id, uploadId));
+  const refused = imported.refused + inserted.problems.length;
+  const problems = [...imported.problems, ...inserted.problems].slice(0, MOST_PROBLEMS);
+  await tx
+    .update(upload)
+    .set({ rowsKept: inserted.kept, rowsRefused: refused, problems })
+    .where(eq(upload.id, uploadId));
   await audit(tx, {
     labId,
     actorId: member.userId,
@@ -141,7 +159,7 @@ async function store(
       sha256,
       kept: inserted.kept,
       known: inserted.known,
-      refused: imported.refused,
+      refused,
     },
   });
   const asked = await askEvidence(tx, {
@@ -149,19 +167,20 @@ async function store(
     studyId: target.study.id,
     askedBy: member.userId,
   });
-  return { uploadId, ...inserted, jobId: asked?.jobId ?? null };
+  const { kept, known } = inserted;
+  return { uploadId, kept, known, refused, problems, jobId: asked?.jobId ?? null };
 }
 
 /**
  * Takes a file of readings in: the file as it is, its good rows as readings, its bad rows listed with
  * what is wrong and how to mend it. All of it or, on any failure, nothing.
  */
-export async function acceptUpload(context: Context, input: UploadInput) {
+export async function acceptUpload(context: Context, input: UploadInput): Promise<UploadAccount> {
   const { db, member } = context;
   const target = await targetOf(db, member.labId, input);
   const sha256 = createHash('sha256').update(input.bytes).digest('hex');
   await refuseKnown(db, member, input.studyId, sha256);
-  const imported = importReadings(input, {
+  const imported = await importFile(input, {
     setAt: target.setAt,
     timeZone: member.lab.timeZone,
     now: context.now,
@@ -173,8 +192,7 @@ export async function acceptUpload(context: Context, input: UploadInput) {
       await file.keep();
       return done;
     });
-    const { refused, remarks } = imported;
-    return { ...stored, refused, remarks, problems: imported.problems.slice(0, MOST_PROBLEMS) };
+    return { ...stored, remarks: imported.remarks };
   } catch (error) {
     await file.drop();
     if (isDuplicate(error)) await refuseKnown(db, member, input.studyId, sha256);

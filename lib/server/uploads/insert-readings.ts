@@ -1,16 +1,8 @@
 import { and, eq, inArray } from 'drizzle-orm';
 import { v7 as uuid } from 'uuid';
 import type { Transaction } from '@/db/client';
-import { reading } from '@/db/schema';
-
-/** One reading of a file: its line, its readout, minutes since the setting. */
-export type ImportedReading = {
-  row: number;
-  readout: string;
-  minutes: number;
-  value: number | null;
-  state: 'value' | 'missing' | 'below limit';
-};
+import { type RowProblem, reading } from '@/db/schema';
+import type { TimedReading } from './import-file';
 
 type Of = {
   labId: string;
@@ -18,17 +10,18 @@ type Of = {
   uploadId: string;
   byId: string;
   now: Date;
-  rows: ImportedReading[];
+  rows: TimedReading[];
 };
 
 /** Rows of one statement: about 700 kB, well below what a packet holds. */
 const BATCH = 4000;
 
-const keyOf = (r: Pick<ImportedReading, 'readout' | 'minutes' | 'value' | 'state'>) =>
-  `${r.readout}\u0000${r.minutes}\u0000${r.value ?? r.state}`;
+const placeOf = (r: Pick<TimedReading, 'readout' | 'minutes'>) => `${r.readout}\u0000${r.minutes}`;
+const saidBy = (r: Pick<TimedReading, 'value' | 'state'>) =>
+  r.state === 'value' ? String(r.value) : r.state;
 
-/** What the run has already, of the readouts that the file speaks of. */
-async function knownKeys(tx: Transaction, of: Of): Promise<Set<string>> {
+/** What the run has already, of the readouts that the file speaks of: place → what it says. */
+async function knownReadings(tx: Transaction, of: Of): Promise<Map<string, string>> {
   const rows = await tx
     .select({
       readout: reading.readout,
@@ -44,7 +37,30 @@ async function knownKeys(tx: Transaction, of: Of): Promise<Set<string>> {
         inArray(reading.readout, [...new Set(of.rows.map((r) => r.readout))]),
       ),
     );
-  return new Set(rows.map(keyOf));
+  return new Map(rows.map((r) => [placeOf(r), saidBy(r)]));
+}
+
+/** Rows that are new, how many the run had already, and those that contradict what it has. */
+function sortOut(rows: TimedReading[], known: Map<string, string>) {
+  if (known.size === 0) return { fresh: rows, same: 0, problems: [] };
+  const fresh: TimedReading[] = [];
+  const problems: RowProblem[] = [];
+  let same = 0;
+  for (const r of rows) {
+    const before = known.get(placeOf(r));
+    if (before === undefined) fresh.push(r);
+    else if (before === saidBy(r)) same += 1;
+    else {
+      problems.push({
+        row: r.row,
+        column: r.readout,
+        text: saidBy(r),
+        reason: `The run holds ${before} of ${r.readout} at this time already.`,
+        mend: 'Correct the time or leave the row out; a reading is never written over.',
+      });
+    }
+  }
+  return { fresh, same, problems };
 }
 
 /**
@@ -54,9 +70,8 @@ async function knownKeys(tx: Transaction, of: Of): Promise<Set<string>> {
 export async function insertReadings(
   tx: Transaction,
   of: Of,
-): Promise<{ kept: number; known: number }> {
-  const known = await knownKeys(tx, of);
-  const fresh = known.size > 0 ? of.rows.filter((r) => !known.has(keyOf(r))) : of.rows;
+): Promise<{ kept: number; known: number; problems: RowProblem[] }> {
+  const { fresh, same, problems } = sortOut(of.rows, await knownReadings(tx, of));
   for (let i = 0; i < fresh.length; i += BATCH) {
     await tx.insert(reading).values(
       fresh.slice(i, i + BATCH).map((r) => ({
@@ -74,5 +89,5 @@ export async function insertReadings(
       })),
     );
   }
-  return { kept: fresh.length, known: of.rows.length - fresh.length };
+  return { kept: fresh.length, known: same, problems };
 }
