@@ -19,10 +19,11 @@ import type { Stage } from './stage';
 
 const DAY_MS = 86_400_000;
 const HOUR_MS = 3_600_000;
-const DAYS_BACK = 9;
+/** Working days since the series began: a level a day, so that about three are done. */
+const WORKING_DAYS_BACK = 4;
 /** The invented strain is not quite the model: its inhibitor binds a little more weakly. */
 const STRAIN_EC50_SHARE = 1.12;
-const CONTROL = { from: 3, to: 24 };
+const CONTROL = { from: 2.5, to: 24 };
 
 /** The strain that the demo readings come from. */
 function strain(controlValue: number): { model: SystemModel; alpha: number } {
@@ -42,7 +43,7 @@ async function plan(stage: Stage, then: Date): Promise<string> {
     rigId: stage.demo.rigs.plate ?? null,
     doseLabel: repressorLoop.doseLabel,
     doseUnit: repressorLoop.doseUnit,
-    ceilingDose: 90,
+    ceilingDose: 95,
     largestStep: 30,
     stopRules:
       'Optical density falls by half within an hour, or a well is seen to be contaminated.',
@@ -170,10 +171,19 @@ async function read(stage: Stage, studyId: string): Promise<void> {
   }
 }
 
+function workingDaysBefore(from: Date, days: number): Date {
+  let at = from;
+  for (let left = days; left > 0; ) {
+    at = new Date(at.getTime() - DAY_MS);
+    if (at.getUTCDay() !== 0 && at.getUTCDay() !== 6) left -= 1;
+  }
+  return at;
+}
+
 /** The repressor ring, half-way up its series: some runs judged, the rest on the calendar. */
 export async function stageRepressor(stage: Stage, now: Date): Promise<void> {
   const morning = new Date(Math.floor(now.getTime() / DAY_MS) * DAY_MS + 6 * HOUR_MS);
-  const then = new Date(morning.getTime() - DAYS_BACK * DAY_MS);
+  const then = workingDaysBefore(morning, WORKING_DAYS_BACK);
   const studyId = await plan(stage, then);
   await perform(stage, studyId, now);
   await read(stage, studyId);

@@ -41,6 +41,16 @@ describe('published observations of the chemostat (Fussmann et al. 2000)', () =>
     expect(upper!.onset.high).toBeGreaterThan(1.16);
   });
 
+  it('give both onsets from the few rates that the text names: one sustained level serves both', () => {
+    const levels = CHEMOSTAT.filter((l) => [0.04, 0.32, 0.64, 1.16, 1.37].includes(l.control));
+    const upper = estimate({ levels, oscillates: 'below' }).onsets[0]!;
+    expect(upper.onset.value).toBeGreaterThan(0.64);
+    expect(upper.onset.value).toBeLessThan(1.37);
+    expect(upper.onset.low).toBeLessThan(1.16);
+    expect(upper.onset.high).toBeGreaterThan(1.16);
+    expect(estimate({ levels }).onsets.map((o) => o.oscillates)).toEqual(['above', 'below']);
+  });
+
   it('differ from the predicted lower onset 0.151, and the update follows the evidence', () => {
     const values = Array.from({ length: 200 }, (_, i) => 0.151 + 0.0002 * (i - 100));
     const answer = estimate({ levels: CHEMOSTAT, predicted: { values }, oscillates: 'above' });

@@ -21,8 +21,10 @@ export function findChanges(evidence: Evidence[]): Change[] {
   const best = bestPattern(steady, sustained);
   const cuts = best.cuts.map((k) => (controls[k - 1]! + controls[k]!) / 2);
   return cuts.map((at, i) => {
-    const from = i > 0 ? (cuts[i - 1]! + at) / 2 : -Infinity;
-    const to = i + 1 < cuts.length ? (at + cuts[i + 1]!) / 2 : Infinity;
+    // A stretch of one level belongs to both of its changes.
+    const nearest = { below: controls[best.cuts[i]! - 1]!, above: controls[best.cuts[i]!]! };
+    const from = i > 0 ? Math.min((cuts[i - 1]! + at) / 2, nearest.below) : -Infinity;
+    const to = i + 1 < cuts.length ? Math.max((at + cuts[i + 1]!) / 2, nearest.above) : Infinity;
     const sustainedBefore = (best.first + i) % 2 === 1;
     return {
       oscillates: sustainedBefore ? 'below' : 'above',

@@ -102,7 +102,7 @@ export const chemostat: LibraryModel = {
   control: {
     symbol: 'de',
     from: 0.02,
-    to: 1.3,
+    to: 1.4,
     doseMap: { kind: 'linear', slope: HOURS_PER_DAY / VESSEL_ML, offset: 0 },
   },
   doseLabel: 'pump rate',
