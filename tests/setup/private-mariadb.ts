@@ -17,7 +17,14 @@ export default async function setUp(project: TestProject) {
   const user = 'swaypoint_test';
   const workers = Array.from({ length: testWorkers }, (_, index) => index + 1);
   const databases = workers.map(testDatabaseName);
-  const server = await startMariadb(join(folder, 'mariadb'), { user, password, databases });
+  // For the tests of the migration itself.
+  const spare = databases.map((name) => `${name}_migrate`);
+  const server = await startMariadb(join(folder, 'mariadb'), {
+    user,
+    password,
+    databases: [...databases, ...spare],
+    durable: false,
+  });
   const tearDown = async () => {
     await stopMariadb(server);
     await rm(folder, { recursive: true, force: true });
