@@ -166,7 +166,7 @@ describe('a recurrence that never comes', () => {
       '2028-01-01T00:00Z',
     );
     expect(got).toEqual([]);
-    expect(performance.now() - began).toBeLessThan(1500);
+    expect(performance.now() - began).toBeLessThan(5000);
   });
   it.each([
     ['FREQ=DAILY', 3653],

@@ -40,7 +40,7 @@ describe('three hundred bookings of ten visits over sixty days', () => {
     const began = performance.now();
     const answer = layOut(asked);
     // A few seconds on an idle machine; the bound leaves room for one shared with other work.
-    expect(performance.now() - began).toBeLessThan(25_000);
+    expect(performance.now() - began).toBeLessThan(40_000);
     expect(answer.unplaced).toEqual([]);
     expect(checkLayOut(asked, answer)).toEqual([]);
   });

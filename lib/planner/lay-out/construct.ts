@@ -1,6 +1,6 @@
 import { insertAll } from './insert';
 import { earliestPlace } from './place';
-import type { Job, Problem } from './problem';
+import { type Job, joinGroups, type Problem } from './problem';
 import type { Cost, Placed, State } from './state';
 import { compareCost } from './state';
 
@@ -62,6 +62,7 @@ export function markHopeless(state: State): void {
     }
     if (!fits || job.after.some((a) => state.hopeless.has(a.job))) state.hopeless.add(i);
   }
+  joinGroups(jobs, state.hopeless);
 }
 
 /** The best of the greedy plans; the state is left holding it. */

@@ -64,7 +64,9 @@ function chooseTaste(state: State, random: Random): Taste {
   const strength = random() < 0.4 ? 4 * HOUR : 0;
   const size = Math.max(state.problem.people.length, state.problem.rigs.length);
   const noise = Array.from({ length: size }, () => random() * strength);
-  return { noise: (p) => noise[p]!, keepRounds: random() < 0.75 };
+  const keepRounds = random() < 0.75;
+  const late = random() < 0.15 ? 0.5 : 0;
+  return { noise: (p) => noise[p]!, keepRounds, dawdle: () => late > 0 && random() < late };
 }
 
 /** Now and then a booking is held back: with gapMax the earliest start is not always the best. */

@@ -32,6 +32,8 @@ export type Job = {
   skills: string[];
   after: { job: number; gapMin: number; gapMax: number }[];
   followers: number[];
+  /** The booking named by `sameRigAs`. */
+  twin: number | null;
   /** All bookings that must stand on the same rig, this one included; [index] when alone. */
   group: number[];
   weight: number;
@@ -79,7 +81,8 @@ function readJobs(request: LayOutRequest): Job[] {
       people: a.people,
       round: a.round ?? null,
     }));
-    visits.sort((a, b2) => a.at - b2.at || a.index - b2.index);
+    // Visits with no leeway come first: the others can make room for them.
+    visits.sort((a, b2) => a.late - b2.late || a.at - b2.at || a.index - b2.index);
     const skills = [...new Set(b.skills ?? [])];
     const able = request.people.flatMap((p, i) =>
       skills.every((s) => p.skills?.includes(s)) ? [i] : [],
@@ -99,22 +102,23 @@ function readJobs(request: LayOutRequest): Job[] {
         gapMax: a.gapMax === undefined ? Number.POSITIVE_INFINITY : minutesToMs(a.gapMax),
       })),
       followers: [],
+      twin: b.sameRigAs === undefined ? null : jobIndex.get(b.sameRigAs)!,
       group: [index],
       weight: b.weight ?? 1,
     };
   });
 }
 
-/** Joins bookings tied by `sameRigAs`, directly or through others. */
-function joinGroups(request: LayOutRequest, jobs: Job[]): void {
-  const byId = new Map(jobs.map((j) => [j.id, j]));
-  request.bookings.forEach((b, i) => {
-    const one = jobs[i]!;
-    const other = b.sameRigAs === undefined ? undefined : byId.get(b.sameRigAs);
-    if (!other || other.group === one.group) return;
+/** Joins bookings tied by `sameRigAs`, directly or through others that may be placed. */
+export function joinGroups(jobs: readonly Job[], without: ReadonlySet<number>): void {
+  for (const job of jobs) job.group = [job.index];
+  for (const one of jobs) {
+    if (one.twin === null || without.has(one.index) || without.has(one.twin)) continue;
+    const other = jobs[one.twin]!;
+    if (other.group === one.group) continue;
     const joined = [...one.group, ...other.group].sort((a, c) => a - c);
     for (const member of joined) jobs[member]!.group = joined;
-  });
+  }
 }
 
 function readPeople(
@@ -172,7 +176,7 @@ export function readProblem(request: LayOutRequest): Problem {
   const jobs = readJobs(request);
   for (const job of jobs) for (const a of job.after) jobs[a.job]!.followers.push(job.index);
   const order = topologicalOrder(jobs);
-  joinGroups(request, jobs);
+  joinGroups(jobs, new Set());
   const days = new LocalDays(notBefore - MARGIN, notAfter + MARGIN, zone);
   return {
     zone,

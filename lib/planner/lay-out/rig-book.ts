@@ -1,4 +1,8 @@
 import { nextInside, type Span } from './spans';
+import { DAY } from './time';
+
+/** Idle longer than this is all the same, ms: a rig never used is no looser a fit. */
+const LONG_IDLE = 30 * DAY;
 
 /** What one rig holds over time, as a step function of units in use. */
 export class RigBook {
@@ -69,6 +73,6 @@ export class RigBook {
   /** How long the unit has stood idle before `t`, ms: small when the booking fits snugly. */
   idleBefore(t: number): number {
     const i = this.indexAt(t);
-    return this.used[i]! > 0 ? 0 : t - this.times[i]!;
+    return this.used[i]! > 0 ? 0 : Math.min(LONG_IDLE, t - this.times[i]!);
   }
 }

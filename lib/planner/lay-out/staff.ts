@@ -1,5 +1,6 @@
 import type { Job, Visit } from './problem';
 import type { Attendance, State } from './state';
+import { GRID } from './time';
 
 /** How the search breaks ties; the defaults take the least loaded person. */
 export type Taste = {
@@ -7,11 +8,14 @@ export type Taste = {
   noise: (index: number) => number;
   /** Whether whoever is there for a round already does the sister vessel as well. */
   keepRounds: boolean;
+  /** Whether a visit that may begin late is to try its latest moment first. */
+  dawdle: () => boolean;
 };
-export const LEAST_LOADED: Taste = { noise: () => 0, keepRounds: true };
+export const LEAST_LOADED: Taste = { noise: () => 0, keepRounds: true, dawdle: () => false };
 
 const TRIES = 40;
 const COMBINATIONS = 8;
+const LATER = 4;
 
 /**
  * The earliest moment in [t, limit] at which enough able people can attend the visit together,
@@ -75,7 +79,22 @@ function combinations(people: readonly number[], n: number): number[][] {
   return out;
 }
 
-function choices(state: State, job: Job, visit: Visit, start: number, taste: Taste): Choice[] {
+/** A few moments of the leeway, on the grid of starts, for visits that must make room. */
+function laterMoments(visit: Visit, first: number): number[] {
+  const stride = Math.max(GRID, Math.ceil(visit.late / GRID / LATER) * GRID);
+  const out: number[] = [];
+  for (let by = stride; by <= visit.late; by += stride) out.push(first + by);
+  return out;
+}
+
+/** Ways to staff one visit, likeliest first; worked out only as far as they are asked for. */
+function* choices(
+  state: State,
+  job: Job,
+  visit: Visit,
+  start: number,
+  taste: Taste,
+): Generator<Choice> {
   const first = start + visit.at;
   const last = first + visit.late;
   const { people } = state.problem;
@@ -85,28 +104,24 @@ function choices(state: State, job: Job, visit: Visit, start: number, taste: Tas
   });
   // Two people may be free together only at a moment that is neither one's first.
   const joint = visit.people > 1 ? [nextStaffed(state, job, visit, first, last)] : [];
-  const moments = [...new Set([...joint, ...when])].filter(Number.isFinite).sort((a, b) => a - b);
-  const out: Choice[] = [];
+  const soon = [...joint, ...when].filter(Number.isFinite);
+  const moments = [...new Set([...soon, ...laterMoments(visit, first)])].sort((a, b) => a - b);
+  if (visit.late > 0 && taste.dawdle()) moments.reverse();
   for (const from of moments) {
+    state.work += job.able.length;
     const free = job.able.filter(
-      (p, i) =>
-        when[i] === from ||
-        (when[i]! < from && people[p]!.nextFree(from, visit.duration, visit.round, from) === from),
+      (p) => people[p]!.nextFree(from, visit.duration, visit.round, from) === from,
     );
     if (free.length < visit.people) continue;
-    // One alone may come later than another could: offered after those who can come at once.
-    const fresh =
-      visit.people === 1 ? free.filter((p) => when[job.able.indexOf(p)] === from) : free;
-    for (const set of combinations(ranked(state, visit, from, fresh, taste), visit.people)) {
-      out.push({ people: set, from });
+    for (const set of combinations(ranked(state, visit, from, free, taste), visit.people)) {
+      yield { people: set, from };
     }
   }
-  return out;
 }
 
 /**
  * People and moments for every visit of a booking that starts at `start`, or null. Visits are
- * taken in order of time with a bounded backtrack, because one visit uses up rest, minutes and
+ * taken from the least leeway to the most with a bounded backtrack, because one visit uses up rest, minutes and
  * presence that the next one needs.
  */
 export function staffVisits(
