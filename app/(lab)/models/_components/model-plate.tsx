@@ -2,7 +2,7 @@ import Link from 'next/link';
 import { OnsetRibbon } from '@/components/ribbon';
 import { Equations } from '@/components/system/equations';
 import { KeyLink, Plate } from '@/components/ui';
-import { figure, withUnit } from '@/lib/format';
+import { figure, unitText, withUnit } from '@/lib/format';
 import { citationOf } from '@/lib/server/systems/published-source';
 import type { LibraryModel } from '@/lib/sim/library';
 import type { PredictedHere } from './predicted-here';
@@ -26,13 +26,13 @@ export function ModelPlate({ model: published, predicted, startable }: PlateProp
           {parameter?.label ? `${parameter.label} (${control.symbol})` : control.symbol}, {range}
         </dd>
         <dt className="text-caption text-ink2 tablet:pt-[3px]">Dose</dt>
-        <dd>{withUnit(`${published.doseLabel}, in`, published.doseUnit)}</dd>
+        <dd>{`${published.doseLabel}, in ${unitText(published.doseUnit)}`}</dd>
         <dt className="text-caption text-ink2 tablet:pt-[3px]">Perturbs</dt>
         <dd>{perturbs}</dd>
         <dt className="text-caption text-ink2 tablet:pt-[3px]">Source</dt>
         <dd>
           {citationOf(source)}
-          <span className="block text-caption text-ink2">{provenance}</span>
+          <span className="mt-1 block text-caption text-ink2">{provenance}</span>
         </dd>
       </dl>
       {predicted ? (

@@ -3,7 +3,7 @@ import type { ReactNode } from 'react';
 import { Caution, Finding, FindingAndTable, KeyLink, Plate } from '@/components/ui';
 import { type StudyRow, studyById, studyProgress, usableRigs } from '@/db/queries/studies';
 import type { Station } from '@/db/queries/study-stations';
-import { dateText, figure, stampText, withUnit, zoned } from '@/lib/format';
+import { dateText, figure, stampText, unitText, withUnit, zoned } from '@/lib/format';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
 import { ChangeStudy } from './_components/change-study';
@@ -80,7 +80,7 @@ function factsOf(study: StudyRow, zone: string): { name: string; value: ReactNod
   return [
     { name: 'Perturbs', value: study.perturbs },
     { name: 'Rig', value: study.rigName ?? 'none yet' },
-    { name: 'Dose', value: withUnit(`${study.doseLabel}, in`, study.doseUnit) },
+    { name: 'Dose', value: `${study.doseLabel}, in ${unitText(study.doseUnit)}` },
     { name: 'Ceiling dose', value: dose(study.ceilingDose) },
     { name: 'Largest step', value: dose(study.largestStep) },
     { name: 'Stop rules', value: study.stopRules },

@@ -49,7 +49,12 @@ export default async function PredictionPage({ params }: { params: Promise<{ stu
     <>
       {failed ? <Failed error={failed.error} studyId={studyId} kept={prediction !== null} /> : null}
       {shown === null ? (
-        <NoPrediction predicts={predicts} working={active !== null} panel={panel} />
+        <NoPrediction
+          predicts={predicts}
+          working={active !== null}
+          failed={failed !== null}
+          panel={panel}
+        />
       ) : (
         <>
           {stale ? (
@@ -93,22 +98,26 @@ function Failed(props: { error: string | null; studyId: string; kept: boolean })
 type NoPredictionProps = {
   predicts: boolean;
   working: boolean;
+  failed: boolean;
   panel: React.ComponentProps<typeof PredictPanel>;
 };
 
-function NoPrediction({ predicts, working, panel }: NoPredictionProps) {
+/** What stands here before the first prediction; a failure has already said that there is none. */
+function NoPrediction({ predicts, working, failed, panel }: NoPredictionProps) {
   const title = working ? 'The first prediction is being worked out' : 'Nothing predicted yet';
   if (!predicts) {
     return <EmptyState title={title}>The head or an investigator can predict.</EmptyState>;
   }
   return (
     <PredictPanel {...panel}>
-      <div className="mb-6">
-        <EmptyState title={title}>
-          The prediction says where the steady state turns into a sustained oscillation, how sure
-          that is, and how long to wait at each level.
-        </EmptyState>
-      </div>
+      {failed ? null : (
+        <div className="mb-6">
+          <EmptyState title={title}>
+            The prediction says where the steady state turns into a sustained oscillation, how sure
+            that is, and how long to wait at each level.
+          </EmptyState>
+        </div>
+      )}
     </PredictPanel>
   );
 }
