@@ -1,6 +1,7 @@
 import { setImmediate as nextTurn } from 'node:timers/promises';
 import type { RowProblem } from '@/db/schema';
 import type { UploadMapping } from '@/lib/contracts/forms/readings';
+import { decodeText } from '@/lib/evidence/import/decode-text';
 import { importReadings } from '@/lib/evidence/import/import-readings';
 import type { ImportedReading } from '@/lib/evidence/import/mapping';
 import { stampText } from '@/lib/format';
@@ -43,14 +44,6 @@ const MOST_LISTED = 500;
 const LONGEST_MINUTES = 100 * 365.25 * 1440;
 
 type Setting = { setAt: Date; timeZone: string; now: Date };
-
-/** Text of the bytes: UTF-8, or UTF-16 where its byte order mark says so. */
-function textOf(bytes: Uint8Array): string {
-  const [a, b] = bytes;
-  const code =
-    a === 0xff && b === 0xfe ? 'utf-16le' : a === 0xfe && b === 0xff ? 'utf-16be' : 'utf-8';
-  return new TextDecoder(code).decode(bytes);
-}
 
 const minutesSince = (setAt: Date, time: number | string) =>
   typeof time === 'number' ? time : (Date.parse(time) - setAt.getTime()) / 60_000;
@@ -148,7 +141,7 @@ export async function importFile(
   setting: Setting,
 ): Promise<ImportedFile> {
   const { mapping } = file;
-  const { header, records, lines } = splitRecords(textOf(file.bytes), mapping.delimiter);
+  const { header, records, lines } = splitRecords(decodeText(file.bytes), mapping.delimiter);
   if (records.length > MOST_RECORDS) throw tooMany(`${MOST_RECORDS.toLocaleString('en')} rows`);
   const found = new Collected(setting);
   const size = Math.ceil(PART_CELLS / mapping.valueColumns.length);

@@ -1,0 +1,142 @@
+import type { Metadata } from 'next';
+import { notFound } from 'next/navigation';
+import { Judging } from '@/components/evidence/judging';
+import { Caution, EmptyState, KeyLink, Plate } from '@/components/ui';
+import { newestJob } from '@/db/queries/active-job';
+import { estimateHistory, latestEstimate } from '@/db/queries/estimates';
+import { approvedVersion } from '@/db/queries/series';
+import { studyById } from '@/db/queries/studies';
+import { stampText } from '@/lib/format';
+import { database } from '@/lib/server/database';
+import { onsetView } from '@/lib/server/evidence/onset-view';
+import { runRows } from '@/lib/server/evidence/run-rows';
+import { may, pageMember } from '@/lib/server/member';
+import { studyRibbon } from '@/lib/server/predictions/study-ribbon';
+import { History } from './_components/history';
+import { MethodTables } from './_components/method-table';
+import { OnsetFinding } from './_components/onset-finding';
+import { OnsetPlate } from './_components/onset-plate';
+import { judgeAgainAction } from './actions';
+
+export const metadata: Metadata = { title: 'Onset' };
+
+/** The predicted onset beside the observed one, and what to do next. */
+export default async function OnsetPage({ params }: { params: Promise<{ studyId: string }> }) {
+  const member = await pageMember();
+  const { labId } = member;
+  const zone = member.lab.timeZone;
+  const { studyId } = await params;
+  const db = database();
+  const of = { labId, studyId };
+  const study = await studyById(db, of);
+  if (!study) notFound();
+  const [shown, estimate, past, rows, job, approved] = await Promise.all([
+    studyRibbon(db, { ...of, ceilingDose: study.ceilingDose }),
+    latestEstimate(db, of),
+    estimateHistory(db, of),
+    runRows(db, of),
+    newestJob(db, { ...of, kind: 'evidence' }),
+    approvedVersion(db, of),
+  ]);
+  if (!shown) return <NoPrediction studyId={studyId} />;
+  const { prediction, ribbon } = shown;
+  const stale =
+    estimate && estimate.predictionId !== prediction.id
+      ? 'The onset below was set against an earlier prediction.'
+      : null;
+  const judging = (
+    <Judging
+      studyId={studyId}
+      job={followed(job)}
+      stale={stale}
+      again={may(member, 'upload readings') ? judgeAgainAction : null}
+    />
+  );
+  const seen = rows.filter((r) => r.verdict !== null || r.readings > 0);
+  if (!estimate) {
+    return (
+      <>
+        {judging}
+        <NoVerdict studyId={studyId} read={seen.length > 0} />
+      </>
+    );
+  }
+  const { model } = prediction.request;
+  const view = onsetView(estimate, { answer: prediction.answer, unit: ribbon.unit, rows });
+  return (
+    <>
+      {judging}
+      <OnsetPlate ribbon={ribbon} model={model} rows={rows} onsets={view.onsets} />
+      <OnsetFinding
+        study={study}
+        view={view}
+        rows={seen}
+        units={{
+          control: ribbon.unit,
+          dose: study.doseUnit,
+          doseLabel: study.doseLabel,
+          time: model.timeUnit,
+        }}
+        replans={may(member, 'write series') && approved !== null}
+        at={stampText(estimate.createdAt, zone)}
+      />
+      {view.notes.length > 0 ? (
+        <Plate title="What to know about it" className="mt-6">
+          <ul className="flex list-disc flex-col gap-2 pl-5">
+            {view.notes.map((note) => (
+              <li key={note}>{note}</li>
+            ))}
+          </ul>
+        </Plate>
+      ) : null}
+      {view.onsets.length > 0 ? <MethodTables onsets={view.onsets} unit={ribbon.unit} /> : null}
+      <History
+        from={ribbon.from}
+        to={ribbon.to}
+        unit={ribbon.unit}
+        past={past
+          .map((p) => ({
+            id: p.id,
+            runs: p.runsJudged,
+            at: stampText(p.createdAt, zone),
+            onsets: p.answers.flatMap((a) => a.onsets.map((o) => o.onset)),
+          }))
+          .reverse()}
+      />
+      <div className="mt-6">
+        <Caution />
+      </div>
+    </>
+  );
+}
+
+function followed(job: Awaited<ReturnType<typeof newestJob>>) {
+  if (!job) return null;
+  const { id, state, error } = job;
+  if (state === 'queued' || state === 'running') return { id, state: 'running' as const, error };
+  return state === 'failed' ? { id, state, error } : null;
+}
+
+function NoPrediction({ studyId }: { studyId: string }) {
+  return (
+    <EmptyState
+      title="Nothing predicted yet"
+      action={<KeyLink href={`/studies/${studyId}/prediction`}>To the prediction</KeyLink>}
+    >
+      The observed onset stands beside the predicted one; the prediction comes first.
+    </EmptyState>
+  );
+}
+
+function NoVerdict({ studyId, read }: { studyId: string; read: boolean }) {
+  return (
+    <EmptyState
+      title="No run has a verdict yet"
+      action={<KeyLink href={`/studies/${studyId}/readings`}>To the readings</KeyLink>}
+    >
+      {read
+        ? 'The onset follows once the records are judged.'
+        : 'The onset follows from what the runs show: steady below, sustained above, and how fast a nudge dies away.'}
+    </EmptyState>
+  );
+}
