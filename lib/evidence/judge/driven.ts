@@ -81,55 +81,27 @@ export function fitDrifting(
   floor: number,
   bounds: Bounds,
   near: DrivenFit,
-): { drift: Drift; driven: DrivenFit; model: DrivenModel } | null {
-  const likelihood = makeLikelihood(t, y, trend, floor);
-  const value = (w: Wide) => {
-    const rate = Math.log(w.driftRate);
-    const outside =
-      rate < 0 || rate > Math.log(4 * t.length) || Math.abs(Math.log(w.driftVariance)) > 12;
-    if (outside || !isInside(w, bounds)) return -Infinity;
-    return likelihood({ ...w, drive: driveOf(w) })?.logLikelihood ?? -Infinity;
-  };
-  const climb = (start: Wide, free: boolean) => {
-    const unpack = (x: number[]): Wide => ({
-      growth: x[0]!,
-      frequency: x[1]!,
-      driftRate: Math.exp(x[2]!),
-      driftVariance: Math.exp(x[3]!),
-      logDrive: free ? x[4]! : LOG_DRIVE.none,
-    });
-    const x = [start.growth, start.frequency, Math.log(start.driftRate), 0];
-    const steps = [Math.max(0.3, 0.2 * Math.abs(start.growth)), 0.15, 0.8, 1];
-    const result = nelderMead(
-      (v) => -value(unpack(v)),
-      free ? [...x, start.logDrive] : x,
-      free ? [...steps, 1] : steps,
-      0.01,
-      free ? 260 : 180,
-    );
-    return { point: unpack(result.point), value: -result.value };
-  };
+): { driven: DrivenFit; model: DrivenModel } | null {
+  const value = wideObjective(t, y, trend, floor, bounds);
   const better = <T extends { value: number }>(a: T, b: T) => (b.value > a.value ? b : a);
-  const rates = [3, 0.5 * t.length];
   const level = { driftVariance: 1, logDrive: LOG_DRIVE.none, frequency: near.frequency };
-  const quiet = rates
-    .map((driftRate) => climb({ ...level, driftRate, growth: near.undrivenGrowth }, false))
+  const quiet = [3, 0.5 * t.length]
+    .map((driftRate) => climb(value, { ...level, driftRate, growth: near.undrivenGrowth }, false))
     .reduce(better);
-  const drives = [near.logDrive, 2].filter((d) => d >= LOG_DRIVE.low);
-  const loud = drives
-    .map((logDrive) =>
-      climb({ ...level, growth: near.growth, driftRate: quiet.point.driftRate, logDrive }, true),
-    )
+  const { driftRate } = quiet.point;
+  const loud = [near.logDrive, 2]
+    .filter((logDrive) => logDrive >= LOG_DRIVE.low)
+    .map((logDrive) => climb(value, { ...level, growth: near.growth, driftRate, logDrive }, true))
     .reduce(better, quiet);
   if (!Number.isFinite(loud.value)) return null;
   const model = drivenModel(t, y, trend, floor, bounds, loud.point);
+  const { growth, frequency, logDrive } = loud.point;
   return {
-    drift: loud.point,
     model,
     driven: {
-      growth: loud.point.growth,
-      frequency: loud.point.frequency,
-      logDrive: loud.point.logDrive,
+      growth,
+      frequency,
+      logDrive,
       logLikelihood: loud.value,
       noiseVariance: model.noiseVariance(loud.point),
       undrivenLogLikelihood: quiet.value,
@@ -137,6 +109,44 @@ export function fitDrifting(
       frequencySd: frequencySd(model, loud.point, loud.value),
     },
   };
+}
+
+function wideObjective(
+  t: Float64Array,
+  y: Float64Array,
+  trend: Columns,
+  floor: number,
+  bounds: Bounds,
+): (w: Wide) => number {
+  const likelihood = makeLikelihood(t, y, trend, floor);
+  return (w) => {
+    const rate = Math.log(w.driftRate);
+    const outside =
+      rate < 0 || rate > Math.log(4 * t.length) || Math.abs(Math.log(w.driftVariance)) > 12;
+    if (outside || !isInside(w, bounds)) return -Infinity;
+    return likelihood({ ...w, drive: driveOf(w) })?.logLikelihood ?? -Infinity;
+  };
+}
+
+/** Best oscillation and drift from `start`, with the drive free or left out. */
+function climb(value: (w: Wide) => number, start: Wide, free: boolean) {
+  const unpack = (x: number[]): Wide => ({
+    growth: x[0]!,
+    frequency: x[1]!,
+    driftRate: Math.exp(x[2]!),
+    driftVariance: Math.exp(x[3]!),
+    logDrive: free ? x[4]! : LOG_DRIVE.none,
+  });
+  const from = [start.growth, start.frequency, Math.log(start.driftRate), 0];
+  const steps = [Math.max(0.3, 0.2 * Math.abs(start.growth)), 0.15, 0.8, 1];
+  const result = nelderMead(
+    (v) => -value(unpack(v)),
+    free ? [...from, start.logDrive] : from,
+    free ? [...steps, 1] : steps,
+    0.01,
+    free ? 260 : 180,
+  );
+  return { point: unpack(result.point), value: -result.value };
 }
 
 const SCAN = [-4, -1, 1, 3, 5, 7, 9, 12];
