@@ -111,6 +111,15 @@ export function stationsOf(counts: StudyCounts): Station[] {
   ];
 }
 
+/**
+ * The first station that the work still waits at; -1 when it waits for nothing. What was passed over
+ * and is behind later results (published verdicts need no sessions) holds nothing up.
+ */
+export function waitingAt(stations: readonly Station[]): number {
+  const begun = stations.map((s) => s.state !== 'later').lastIndexOf(true);
+  return stations.findIndex((s, i) => s.missing !== null && (s.state !== 'later' || i > begun));
+}
+
 /** How far a study is: its last station that is done or begun, else its first. */
 export function reachedStation(stations: readonly Station[]): Station {
   const begun = stations.filter((s) => s.state !== 'later');

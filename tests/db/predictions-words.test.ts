@@ -7,7 +7,7 @@ import {
   fallingMap,
 } from '@/lib/server/predictions/ribbon';
 import { growthRateAt, settlingNear } from '@/lib/server/predictions/settling';
-import { doseBand, predictionSentence } from '@/lib/server/predictions/words';
+import { doseBand, predictionSentence, waitText } from '@/lib/server/predictions/words';
 
 const onset: PredictedOnset = {
   value: 0.151,
@@ -50,12 +50,12 @@ const say = (onsets: PredictedOnset[]) =>
 describe('the finding of a prediction', () => {
   test('says where it begins, how sure that is, and how fast it goes', () => {
     expect(say([onset])).toBe(
-      'Begins to oscillate at 0.15 /d (0.11–0.21), with a period of 5.9 d.',
+      'Begins to oscillate at 0.151 /d (0.112–0.208), with a period of 5.9 d.',
     );
   });
 
   test('never says begins where the oscillation ends', () => {
-    expect(say([{ ...onset, oscillates: 'below' }])).toMatch(/^Oscillates below 0.15 /);
+    expect(say([{ ...onset, oscillates: 'below' }])).toMatch(/^Oscillates below 0.151 /);
   });
 
   test('names both ends of a window, and says when there is none', () => {
@@ -67,7 +67,7 @@ describe('the finding of a prediction', () => {
       spread: null,
     };
     expect(say([onset, end])).toBe(
-      'Oscillates from 0.15 /d (0.11–0.21) to 0.97 /d, with periods of 5.9 d and 5.4 d at the ends.',
+      'Oscillates from 0.151 /d (0.112–0.208) to 0.97 /d, with periods of 5.9 d and 5.4 d at the ends.',
     );
     expect(say([])).toBe('No onset between 0 and 1.3 /d.');
   });
@@ -104,6 +104,16 @@ describe('how long to wait', () => {
     expect(growthRateAt(branchOf([0, 1, 0], [-1, -2, -3]), 0.5)).toBeNull();
     const rows = settlingNear({ ...onset, growthSlope: 2 }, control, branchOf([], []));
     for (const row of rows) expect(row.growthRate).toBeCloseTo(2 * (row.control - 0.151), 12);
+  });
+
+  test('is said in a unit that a person would use', () => {
+    const said = (from: number, to: number, unit: string) => plain(waitText(from, to, unit));
+    expect(said(2044, 3134, 'min')).toBe('1.4–2.2 d');
+    expect(said(88.2, 135.2, 'min')).toBe('1.5–2.3 h');
+    expect(said(30, 46, 'd')).toBe('30–46 d');
+    expect(said(50, 77, 'ms')).toBe('50–77 ms');
+    expect(said(46, 46, 'd')).toBe('46 d');
+    expect(said(3, 4, 'wk')).toBe('3–4 wk');
   });
 
   test('stays within the control range', () => {

@@ -1,11 +1,11 @@
 import type { Control, PredictAnswer, PredictedOnset } from '@/lib/contracts';
-import { decimalsFor, figure, fixed, modelTimeText, rangeText, withUnit } from '@/lib/format';
+import { figure, fineDecimalsFor, fixed, modelTimeText, rangeText, withUnit } from '@/lib/format';
 
 /** An onset with its band: "0.151 /d (0.112–0.208)"; the value alone where nothing was drawn. */
 export function onsetText(onset: PredictedOnset, unit: string): string {
   const { spread, value } = onset;
   if (!spread || !(spread.high > spread.low)) return withUnit(figure(value), unit);
-  const decimals = Math.max(0, decimalsFor((spread.high - spread.low) / 2));
+  const decimals = Math.max(0, fineDecimalsFor((spread.high - spread.low) / 2));
   const band = rangeText(spread.low, spread.high, decimals);
   return `${withUnit(fixed(value, decimals), unit)} (${band})`;
 }
@@ -55,6 +55,18 @@ export const criticalityWord = {
   subcritical: 'abrupt',
   degenerate: 'cannot tell',
 } as const satisfies Record<PredictedOnset['criticality'], string>;
+
+const MINUTES: Record<string, number> = { ms: 1 / 60_000, s: 1 / 60, min: 1, h: 60, d: 1440 };
+
+/** A span of model time in the largest unit that it fills twice: "35–53 h", "46 d". */
+export function waitText(from: number, to: number, timeUnit: string): string {
+  const own = MINUTES[timeUnit];
+  const fitting = Object.entries(MINUTES).filter(([, size]) => own && (to * own) / size >= 2);
+  const [unit, size] = fitting.at(-1) ?? [timeUnit, own ?? 1];
+  const scale = (own ?? 1) / size;
+  const [low, high] = [figure(from * scale, 2), figure(to * scale, 2)];
+  return withUnit(low === high ? low : `${low}–${high}`, unit);
+}
 
 /** What the branch does where there is no onset. */
 export function noOnsetWords({ branch }: PredictAnswer): string {

@@ -4,6 +4,7 @@ import type { ReactNode } from 'react';
 import { cache } from 'react';
 import { PageBody } from '@/components/frame';
 import { studyById, studyProgress } from '@/db/queries/studies';
+import { waitingAt } from '@/db/queries/study-stations';
 import { database } from '@/lib/server/database';
 import { pageMember } from '@/lib/server/member';
 import { StudyFrame } from './_components/study-frame';
@@ -34,13 +35,8 @@ export default async function StudyLayout({ params, children }: Props & { childr
         studyId={studyId}
         title={study.title}
         subtitle={remarks.join('; ')}
-        stations={stations.map(({ key, name, state, fact, missing }) => ({
-          key,
-          name,
-          state,
-          fact,
-          missing,
-        }))}
+        stations={stations.map(({ key, name, state, fact }) => ({ key, name, state, fact }))}
+        waitingAt={waitingAt(stations)}
       />
       {children}
     </PageBody>

@@ -2,7 +2,7 @@ import type { RibbonData } from '@/components/ribbon';
 import type { PredictionOutline } from '@/db/queries/predictions';
 import type { StudyRow } from '@/db/queries/studies';
 import type { LevelMark } from '@/db/queries/study-ribbons';
-import { reachedStation, type Station } from '@/db/queries/study-stations';
+import { reachedStation, type Station, waitingAt } from '@/db/queries/study-stations';
 import type { EstimateAnswer } from '@/lib/contracts';
 import { decimalsFor, figure, intervalText, withUnit } from '@/lib/format';
 import { outlineRibbon } from '@/lib/server/predictions/ribbon';
@@ -55,6 +55,6 @@ export function rowOf(study: StudyRow, facts: Facts): StudyListRow {
     predicted: outline?.onsets.map((o) => placeText(o, unit)) ?? [],
     observed: observed.map((o) => placeText(o.onset, unit)),
     reached: { name: reached?.name ?? '', fact: reached?.fact ?? '' },
-    missing: stations.find((s) => s.missing !== null)?.missing ?? null,
+    missing: stations[waitingAt(stations)]?.missing ?? null,
   };
 }

@@ -5,15 +5,16 @@ import type { StudyListRow } from './row-of';
 
 function Title({ row }: { row: StudyListRow }) {
   return (
-    <span className="block min-w-56 py-1.5 leading-5">
+    <span className="block min-w-44 py-1.5 leading-5">
       <Link href={`/studies/${row.id}`} className="underline-offset-4 hover:underline">
         {row.title}
       </Link>
-      {row.simulated ? (
-        <span className="ml-2 border border-edge px-1 text-caption font-normal whitespace-nowrap text-ink2">
-          simulated readings
-        </span>
-      ) : null}
+      <span className="block text-caption font-normal text-ink2">
+        {row.perturbs}
+        {row.simulated ? (
+          <span className="ml-2 border border-edge px-1 whitespace-nowrap">simulated readings</span>
+        ) : null}
+      </span>
     </span>
   );
 }
@@ -43,11 +44,11 @@ function Reached({ row }: { row: StudyListRow }) {
 }
 
 const columns: Column<StudyListRow>[] = [
-  { key: 'title', head: 'Study', strong: true, cell: (row) => <Title row={row} /> },
   {
-    key: 'perturbs',
-    head: 'Perturbs',
-    cell: (row) => <span className="whitespace-nowrap">{row.perturbs}</span>,
+    key: 'title',
+    head: 'Study, and what it perturbs',
+    strong: true,
+    cell: (row) => <Title row={row} />,
   },
   {
     key: 'ribbon',

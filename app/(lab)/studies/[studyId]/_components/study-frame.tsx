@@ -9,11 +9,10 @@ type FrameStation = {
   name: string;
   state: 'done' | 'part' | 'later';
   fact: string;
-  missing: string | null;
 };
 
 /**
- * Title and signal line. The line stands open before the first station that waits for something; the
+ * Title and signal line. The line stands open behind the station that the work waits at; the
  * layout does not know which page is open, so the current station is found here.
  */
 export function StudyFrame(props: {
@@ -21,10 +20,11 @@ export function StudyFrame(props: {
   title: string;
   subtitle: string;
   stations: FrameStation[];
+  /** index of the station that the work waits at, -1 for none */
+  waitingAt: number;
 }) {
-  const { studyId, title, subtitle, stations } = props;
+  const { studyId, title, subtitle, stations, waitingAt } = props;
   const segment = useSelectedLayoutSegment();
-  const opensAfter = stations.findIndex((s) => s.missing !== null);
   const home = `/studies/${studyId}`;
   return (
     <StudyHead
@@ -43,7 +43,7 @@ export function StudyFrame(props: {
         href: `${home}/${s.key}`,
         state: s.key === segment ? 'current' : s.state === 'part' ? 'partly' : s.state,
         fact: s.fact,
-        missing: opensAfter >= 0 && i === opensAfter + 1,
+        missing: waitingAt >= 0 && i === waitingAt + 1,
       }))}
     />
   );

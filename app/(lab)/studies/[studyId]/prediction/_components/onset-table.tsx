@@ -1,6 +1,6 @@
 import { type Column, DataTable, IntervalFigure } from '@/components/ui';
 import type { PredictedOnset } from '@/lib/contracts';
-import { decimalsFor, figure, unitText } from '@/lib/format';
+import { figure, fineDecimalsFor, unitText } from '@/lib/format';
 import { criticalityWord, doseBand } from '@/lib/server/predictions/words';
 
 type Units = { control: string; time: string; dose: string; doseLabel: string };
@@ -9,7 +9,7 @@ type Units = { control: string; time: string; dose: string; doseLabel: string };
 function Figures(props: { value: number; band: { low: number; high: number } | null }) {
   const { value, band } = props;
   if (!band || !(band.high > band.low)) return <>{figure(value)}</>;
-  const decimals = Math.max(0, decimalsFor((band.high - band.low) / 2));
+  const decimals = Math.max(0, fineDecimalsFor((band.high - band.low) / 2));
   return <IntervalFigure interval={{ value, ...band }} style={{ decimals }} />;
 }
 
@@ -55,7 +55,7 @@ const columns = ({ control, time, dose, doseLabel }: Units): Column<PredictedOns
   {
     key: 'slope',
     head: 'Growth slope',
-    unit: control ? `/${unitText(time)} per ${unitText(control)}` : `/${unitText(time)}`,
+    unit: unitText(control) ? `/${unitText(time)} per ${unitText(control)}` : `/${unitText(time)}`,
     kind: 'figure',
     cell: (o) => figure(o.growthSlope),
   },

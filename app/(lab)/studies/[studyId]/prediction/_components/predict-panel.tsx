@@ -107,7 +107,7 @@ function AskForm(props: PanelProps & { onAsked: (jobId: string) => void }) {
         <NumberField
           id="draws"
           label="Draws"
-          className="w-32"
+          className="w-24"
           value={draws}
           onChange={(event) => setDraws(event.target.value)}
           problem={found.draws}
@@ -115,7 +115,7 @@ function AskForm(props: PanelProps & { onAsked: (jobId: string) => void }) {
         <NumberField
           id="seed"
           label="Seed"
-          className="w-32"
+          className="w-24"
           value={seed}
           onChange={(event) => setSeed(event.target.value)}
           problem={found.seed}

@@ -100,7 +100,9 @@ function Notes({ notes }: { notes: PredictionRow['answer']['notes'] }) {
     <Plate title="What to know about it">
       <ul className="flex list-disc flex-col gap-2 pl-5">
         {notes.map((note) => (
-          <li key={`${note.code} ${note.text}`}>{note.text}</li>
+          <li key={`${note.code} ${note.text}`} className="first-letter:uppercase">
+            {note.text}
+          </li>
         ))}
       </ul>
     </Plate>

@@ -1,23 +1,32 @@
 import { type Column, DataTable } from '@/components/ui';
-import { figure, modelTimeText, NARROW_SPACE, unitText } from '@/lib/format';
+import { figure, fineDecimalsFor, fixed, unitText } from '@/lib/format';
 import type { SettlingRow } from '@/lib/server/predictions/settling';
+import { waitText } from '@/lib/server/predictions/words';
 
 type Row = SettlingRow & { dose: number | null };
 type Units = { control: string; time: string; dose: string; doseLabel: string };
 
 function waiting({ side, from, to }: Row, timeUnit: string): string {
-  if (side === 'oscillating') return `${modelTimeText(from, timeUnit, 2)} to grow`;
-  return `${figure(from, 2)}–${figure(to, 2)}${NARROW_SPACE}${timeUnit} to settle`;
+  return `${waitText(from, to, timeUnit)} to ${side === 'steady' ? 'settle' : 'grow'}`;
 }
 
-const columns = ({ control, time, dose, doseLabel }: Units): Column<Row>[] => [
+/** Decimals that keep neighbouring levels apart, two digits of their smallest gap. */
+function decimalsApart(values: (number | null)[]): number {
+  const sorted = values.filter((v) => v !== null).sort((a, b) => a - b);
+  const gaps = sorted.slice(1).map((v, i) => v - (sorted[i] ?? v));
+  return Math.max(0, fineDecimalsFor(Math.min(...gaps.filter((g) => g > 0))));
+}
+
+type Decimals = { control: number; dose: number };
+
+const columns = ({ control, time, dose, doseLabel }: Units, decimals: Decimals): Column<Row>[] => [
   {
     key: 'control',
     head: 'Level',
     unit: unitText(control) || undefined,
     kind: 'figure',
     strong: true,
-    cell: (r) => figure(r.control),
+    cell: (r) => fixed(r.control, decimals.control),
   },
   {
     key: 'dose',
@@ -25,7 +34,11 @@ const columns = ({ control, time, dose, doseLabel }: Units): Column<Row>[] => [
     unit: unitText(dose),
     kind: 'figure',
     cell: (r) =>
-      r.dose === null ? <span className="font-sans">unreachable</span> : figure(r.dose),
+      r.dose === null ? (
+        <span className="font-sans">unreachable</span>
+      ) : (
+        fixed(r.dose, decimals.dose)
+      ),
   },
   { key: 'side', head: 'There it is', cell: (r) => r.side },
   {
@@ -43,7 +56,10 @@ export function WaitingTable({ rows, units }: { rows: Row[]; units: Units }) {
   return (
     <DataTable
       caption="How long to wait near the onset"
-      columns={columns(units)}
+      columns={columns(units, {
+        control: decimalsApart(rows.map((r) => r.control)),
+        dose: decimalsApart(rows.map((r) => r.dose)),
+      })}
       rows={rows}
       rowKey={(r) => String(r.control)}
     />
