@@ -22,7 +22,12 @@ export function whenInWords(from: Date, to: Date, zone: string): string {
   const end = DateTime.fromJSDate(to, { zone });
   const day = start.setLocale('en-GB').toFormat('ccc d LLLL yyyy');
   const until = end.hasSame(start, 'day') ? end.toFormat('HH:mm') : end.toFormat('ccc HH:mm');
-  return `${day}, ${start.toFormat('HH:mm')}–${until}, ${zone} (${utcOffset(start)})`;
+  const clock = start.toFormat('HH:mm');
+  // Across a clock change one offset would be a lie.
+  if (start.offset !== end.offset) {
+    return `${day}, ${clock} (${utcOffset(start)}) – ${until} (${utcOffset(end)}), ${zone}`;
+  }
+  return `${day}, ${clock}–${until}, ${zone} (${utcOffset(start)})`;
 }
 
 function utcOffset(time: DateTime): string {

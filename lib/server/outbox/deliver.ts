@@ -10,6 +10,7 @@ import { mailFacts, type OutboxRow } from './facts';
 
 const MOST_ATTEMPTS = 12;
 const LONGEST_BACK_OFF_MS = 3600_000;
+const BUSY_MS = 2000;
 
 /** The mail server of the configuration; short time limits, since a row stays locked while it sends. */
 export function mailTransport(): Transporter {
@@ -23,11 +24,19 @@ export function mailTransport(): Transporter {
 export const messageIdOf = (slot: string) =>
   `<${createHash('sha256').update(slot).digest('hex').slice(0, 40)}@swaypoint>`;
 
-/** Why a row may no longer be sent; null when it may. */
+/**
+ * Why a row may no longer be sent; null when it may. `busy` while somebody is changing the session:
+ * waiting for them with the row held would be a deadlock with the change, which retires this row.
+ */
 async function expired(tx: Transaction, row: OutboxRow, now: Date): Promise<string | null> {
   if (row.kind !== 'reminder' || !row.sessionId) return null;
-  const [s] = await tx.select().from(session).where(eq(session.id, row.sessionId)).for('share');
-  if (s?.state !== 'planned') return 'the session is no longer planned';
+  const [s] = await tx
+    .select()
+    .from(session)
+    .where(eq(session.id, row.sessionId))
+    .for('update', { skipLocked: true });
+  if (!s) return 'busy';
+  if (s.state !== 'planned') return 'the session is no longer planned';
   if (s.sequence !== row.sequence) return 'the session was moved';
   if (s.personId !== row.recipientId) return 'the session belongs to somebody else now';
   if (s.startsAt.getTime() < now.getTime()) return 'the session had begun';
@@ -77,6 +86,11 @@ export async function deliverNext(
       .for('update', { skipLocked: true });
     if (!row) return 'idle';
     const why = await expired(tx, row, now);
+    if (why === 'busy') {
+      const dueAt = new Date(now.getTime() + BUSY_MS);
+      await tx.update(outbox).set({ dueAt }).where(eq(outbox.id, row.id));
+      return 'later';
+    }
     if (why) {
       await tx.update(outbox).set({ state: 'dead', error: why }).where(eq(outbox.id, row.id));
       return 'dead';
