@@ -1,10 +1,11 @@
-import { and, desc, eq, isNotNull, ne, sql } from 'drizzle-orm';
+import { and, desc, eq, isNotNull, ne } from 'drizzle-orm';
 import type { Transaction } from '@/db/client';
-import { booking, run, type study, visit } from '@/db/schema';
+import { booking, run, type study } from '@/db/schema';
 import { audit } from '../audit';
 import { AppError } from '../errors';
 import type { Member } from '../member';
 import { assertAdvance } from '../states';
+import { shiftWindows, stayOf } from './run-times';
 
 type Run = typeof run.$inferSelect;
 type Study = typeof study.$inferSelect;
@@ -67,30 +68,21 @@ async function assertDose(tx: Transaction, of: Of): Promise<number> {
   return dose;
 }
 
-/** Every "hours since dose" counts from the setting: the windows of the later visits follow it. */
-async function shiftWindows(tx: Transaction, of: Of): Promise<void> {
-  const planned = of.run.plannedStart;
-  if (!planned) return;
-  const seconds = Math.round((of.at.getTime() - planned.getTime()) / 1000);
-  await tx
-    .update(visit)
-    .set({
-      earliest: sql`${visit.earliest} + interval ${seconds} second`,
-      latest: sql`${visit.latest} + interval ${seconds} second`,
-    })
-    .where(and(eq(visit.runId, of.run.id), eq(visit.labId, of.member.labId)));
-}
-
 /** The setting: who set which dose when, read back. Starts the run. */
 export async function setDose(tx: Transaction, of: Of): Promise<void> {
+  if (of.run.state === 'suspended') {
+    throw new AppError('conflict', 'A stop holds this run. Set nothing.', {
+      mend: 'Only the lab head lifts it.',
+    });
+  }
   const dose = await assertDose(tx, of);
   assertAdvance('run', of.run.state, 'settling');
   await tx
     .update(run)
     .set({ state: 'settling', setAt: of.at, setBy: of.member.userId, deliveredDose: dose })
     .where(eq(run.id, of.run.id));
-  await shiftWindows(tx, of);
-  await tx.update(booking).set({ from: of.at }).where(eq(booking.runId, of.run.id));
+  await shiftWindows(tx, of.run, of.at);
+  await tx.update(booking).set(stayOf(of.run, of.at)).where(eq(booking.runId, of.run.id));
   await audit(tx, {
     labId: of.member.labId,
     actorId: of.member.userId,

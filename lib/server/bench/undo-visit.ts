@@ -6,6 +6,7 @@ import type { ActionContext } from '../action';
 import { audit } from '../audit';
 import { AppError, notFound } from '../errors';
 import { lockSession } from '../sessions/lock-session';
+import { shiftWindows, stayOf } from './run-times';
 
 /** Seconds in which one's own press may be taken back. */
 export const UNDO_SECONDS = 60;
@@ -26,8 +27,11 @@ export async function undoVisit(
         mend: 'Write a note; nothing recorded is ever removed later.',
       });
     }
-    if (locked.session.state === 'suspended') {
+    if (locked.session.state === 'suspended' || locked.run.state === 'suspended') {
       throw new AppError('conflict', 'A stop holds this session.');
+    }
+    if (locked.session.state === 'cancelled' || locked.run.state === 'lost') {
+      throw new AppError('conflict', 'This run has ended meanwhile; what was recorded stays.');
     }
     await tx
       .update(visit)
@@ -37,6 +41,7 @@ export async function undoVisit(
       .delete(reading)
       .where(and(eq(reading.visitId, of.id), eq(reading.labId, member.labId)));
     if (of.kind === 'set dose') {
+      await shiftWindows(tx, locked.run, locked.run.setAt, 'back');
       await tx
         .update(run)
         .set({ state: 'planned', setAt: null, setBy: null, deliveredDose: null, endedAt: null })
@@ -47,7 +52,11 @@ export async function undoVisit(
         .set({ state: 'recording', endedAt: null })
         .where(eq(run.id, locked.run.id));
     }
-    await tx.update(booking).set({ state: 'held' }).where(eq(booking.id, locked.booking.id));
+    const stay = stayOf(locked.run, of.kind === 'set dose' ? null : locked.run.setAt);
+    await tx
+      .update(booking)
+      .set({ state: 'held', ...stay })
+      .where(eq(booking.id, locked.booking.id));
     await tx
       .update(session)
       .set({ state: 'started', doneAt: null, revision: sql`${session.revision} + 1` })

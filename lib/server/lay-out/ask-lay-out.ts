@@ -3,8 +3,9 @@ import type { layOutForm } from '@/lib/contracts/forms/series';
 import type { ActionContext } from '../action';
 import { AppError } from '../errors';
 import { enqueue } from '../jobs/queue';
-import { assertApprovable } from '../series/approvable';
+import { approvedUntil, assertApprovable } from '../series/approvable';
 import { lockSeries } from '../series/lock';
+import { heldByStop } from '../stops/held-by-stop';
 import { buildLayOutPlan } from './build-plan';
 
 const LONGEST_DAYS = 400;
@@ -33,8 +34,8 @@ export async function askLayOut(
       );
     }
     assertApprovable(study, version, levels, now);
-    const expiry = study.approvalExpires;
-    const notAfter = expiry && expiry < wanted ? expiry : wanted;
+    const ends = [wanted, study.approvalExpires, approvedUntil(version)].filter((d) => d !== null);
+    const notAfter = new Date(Math.min(...ends.map((d) => d.getTime())));
     const days = (notAfter.getTime() - notBefore.getTime()) / 86_400_000;
     if (!(days > 0 && days <= LONGEST_DAYS)) {
       throw new AppError(
@@ -46,6 +47,16 @@ export async function askLayOut(
       );
     }
     const plan = await buildLayOutPlan(tx, { member, study, version, levels, notBefore, notAfter });
+    const held = await heldByStop(tx, {
+      labId: member.labId,
+      studyId: study.id,
+      runs: plan.runs.map((r) => ({ preparationId: r.preparation.id, dose: r.dose })),
+    });
+    if (held) {
+      throw new AppError('not-possible', held, {
+        mend: 'The lab head lifts it, with a reason; then lay out again.',
+      });
+    }
     const { jobId } = await enqueue(tx, {
       labId: member.labId,
       studyId: study.id,

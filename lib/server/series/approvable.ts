@@ -5,6 +5,11 @@ import type { Level, SeriesVersion, Study } from './types';
 export const needsReference = (perturbs: Study['perturbs']) =>
   perturbs === 'animal' || perturbs === 'human volunteer';
 
+/** The last day that the approval of this version covers, whatever the study says by now. */
+export function approvedUntil(version: Pick<SeriesVersion, 'envelope'>): Date | null {
+  return version.envelope?.lastDate ? new Date(version.envelope.lastDate) : null;
+}
+
 /** Refuses a series that may not be approved: limits, stop rules, and the reference where life is concerned. */
 export function assertApprovable(
   study: Study,

@@ -1,14 +1,15 @@
 import { and, eq } from 'drizzle-orm';
 import type { Transaction } from '@/db/client';
-import { booking, lab, run, session, sessionVisit, study, user, visit } from '@/db/schema';
+import { booking, run, session, sessionVisit, study, user, visit } from '@/db/schema';
 import { AppError, notFound } from '../errors';
+import { lockCalendar } from './lock-calendar';
 
 /** Locks the lab's calendar and one session of it; refuses one changed since it was read, naming by whom. */
 export async function lockSession(
   tx: Transaction,
   of: { labId: string; sessionId: string; revision?: number },
 ) {
-  await tx.select({ id: lab.id }).from(lab).where(eq(lab.id, of.labId)).for('update');
+  await lockCalendar(tx, of);
   const [row] = await tx
     .select({ session, booking, run, study })
     .from(session)

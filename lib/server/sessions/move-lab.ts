@@ -34,11 +34,15 @@ async function chainGaps(conn: Conn, labId: string, held: Held): Promise<MoveLab
   });
 }
 
-/** The lab's calendar around a moment, as the engine asks for it when something moves. */
-export async function moveLab(conn: Conn, of: { member: Member; around: Date }): Promise<MoveLab> {
+/** The lab's calendar around some moments, as the engine asks for it when something moves. */
+export async function moveLab(
+  conn: Conn,
+  of: { member: Member; around: Date[] },
+): Promise<MoveLab> {
   const labId = of.member.labId;
-  const from = new Date(of.around.getTime() - AROUND_MS);
-  const to = new Date(of.around.getTime() + AROUND_MS);
+  const moments = of.around.map((d) => d.getTime());
+  const from = new Date(Math.min(...moments) - AROUND_MS);
+  const to = new Date(Math.max(...moments) + AROUND_MS);
   const [sessions, held, staff, hours, away, rigRows] = await Promise.all([
     sessionsBetween(conn, { labId, from, to }),
     heldBookings(conn, { labId, from }),

@@ -1,7 +1,7 @@
 import { and, eq, sql } from 'drizzle-orm';
 import type { z } from 'zod';
 import type { Transaction } from '@/db/client';
-import { booking, run, session, visit } from '@/db/schema';
+import { booking, run, seriesVersion, session, visit } from '@/db/schema';
 import type { moveForm } from '@/lib/contracts/forms/series';
 import { conflictsOfMove } from '@/lib/planner/lay-out/move';
 import type { MoveLab } from '@/lib/planner/lay-out/move-types';
@@ -10,6 +10,7 @@ import { audit } from '../audit';
 import { AppError } from '../errors';
 import { whenInWords } from '../outbox/compose';
 import { queueNotice, queueReminders, retireSession } from '../outbox/enqueue';
+import { approvedUntil } from '../series/approvable';
 import { lockSession } from './lock-session';
 import { moveLab } from './move-lab';
 
@@ -185,6 +186,15 @@ async function tellMoved(
   }
 }
 
+/** The last day of the approval that this run was planned under. */
+async function approvedUntilOf(tx: Transaction, of: Locked['run']): Promise<Date | null> {
+  const [version] = await tx
+    .select({ envelope: seriesVersion.envelope })
+    .from(seriesVersion)
+    .where(and(eq(seriesVersion.id, of.seriesVersionId), eq(seriesVersion.labId, of.labId)));
+  return version ? approvedUntil(version) : null;
+}
+
 function refuseUnlessOwn(context: ActionContext, locked: Locked, personId: string): void {
   if (context.allowance !== 'own') return;
   const mine = locked.session.personId === context.member.userId;
@@ -220,13 +230,15 @@ export async function moveSession(context: ActionContext, input: z.output<typeof
         mend: 'Ask an investigator or the head.',
       });
     }
-    const expiry = locked.study.approvalExpires;
-    if (expiry && targets.some((t) => t.endsAt > expiry)) {
+    const expiries = [locked.study.approvalExpires, await approvedUntilOf(tx, locked.run)];
+    if (expiries.some((expiry) => expiry && targets.some((t) => t.endsAt > expiry))) {
       throw new AppError('not-possible', 'The approval of this study expires before then.', {
         at: 'startsAt',
       });
     }
-    const lab = await moveLab(tx, { member, around: startsAt });
+    // A run of weeks moves as a whole: all of its sessions are asked about, where they were and will be.
+    const around = targets.flatMap((t) => [t.session.startsAt, t.startsAt]);
+    const lab = await moveLab(tx, { member, around });
     const conflicts = conflictsOf(lab, locked, targets, shiftMs);
     if (conflicts.length > 0) {
       throw new AppError('not-possible', conflicts.join(' '), { at: 'startsAt' });

@@ -3,6 +3,7 @@ import { stopOrder } from '@/db/schema';
 import type { ActionContext } from '../action';
 import { audit } from '../audit';
 import { AppError, notFound } from '../errors';
+import { lockCalendar } from '../sessions/lock-calendar';
 import { releaseSuspended } from './release';
 
 /** The head lifts a stop, with a reason; what another standing stop covers stays held by that one. */
@@ -11,6 +12,7 @@ export async function liftStop(
   input: { stopId: string; reason: string },
 ): Promise<{ stopId: string }> {
   return db.transaction(async (tx) => {
+    await lockCalendar(tx, member);
     const [order] = await tx
       .select()
       .from(stopOrder)

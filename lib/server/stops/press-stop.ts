@@ -7,6 +7,7 @@ import { audit } from '../audit';
 import { notFound } from '../errors';
 import { queueNotice, retireSession } from '../outbox/enqueue';
 import { needsReference } from '../series/approvable';
+import { lockCalendar } from '../sessions/lock-calendar';
 import { stopScope } from './scope';
 
 /** Seconds in which a slip of the hand may be taken back. */
@@ -18,6 +19,7 @@ export async function pressStop(
   input: { studyId: string; sessionId?: string | undefined },
 ): Promise<{ stopId: string; runs: number; sessions: number }> {
   return db.transaction(async (tx) => {
+    await lockCalendar(tx, member);
     const [about] = await tx
       .select()
       .from(study)

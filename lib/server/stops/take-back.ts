@@ -3,6 +3,7 @@ import { stopOrder } from '@/db/schema';
 import type { ActionContext } from '../action';
 import { audit } from '../audit';
 import { AppError, notFound } from '../errors';
+import { lockCalendar } from '../sessions/lock-calendar';
 import { SLIP_SECONDS } from './press-stop';
 import { releaseSuspended, silenceStop } from './release';
 
@@ -12,6 +13,7 @@ export async function takeBackStop(
   input: { stopId: string },
 ): Promise<{ stopId: string }> {
   return db.transaction(async (tx) => {
+    await lockCalendar(tx, member);
     const [order] = await tx
       .select()
       .from(stopOrder)

@@ -1,7 +1,7 @@
 import { and, eq, max, sql } from 'drizzle-orm';
 import type { Transaction } from '@/db/client';
 import { calendarStamp } from '@/db/queries/calendar';
-import { lab, run, seriesVersion, user } from '@/db/schema';
+import { lab, run, seriesVersion, study, user } from '@/db/schema';
 import { type LayOutAnswer, layOutAnswer } from '@/lib/contracts';
 import { audit } from '../../audit';
 import { insertRuns } from '../../lay-out/insert-runs';
@@ -9,6 +9,7 @@ import type { LayOutPlan } from '../../lay-out/plan';
 import { retireUnstarted } from '../../lay-out/retire-unstarted';
 import { whenInWords } from '../../outbox/compose';
 import { queueNotice } from '../../outbox/enqueue';
+import { heldByStop } from '../../stops/held-by-stop';
 import { JobRefused, type Store } from '../kind';
 import type { Job } from '../queue';
 
@@ -20,6 +21,8 @@ async function assertUnchanged(tx: Transaction, job: Job, plan: LayOutPlan) {
     .from(seriesVersion)
     .where(and(eq(seriesVersion.id, plan.seriesVersionId), eq(seriesVersion.labId, job.labId)))
     .for('update');
+  // A stop locks its study: either it comes first and is seen here, or it comes after and sees the runs.
+  await tx.select({ id: study.id }).from(study).where(eq(study.id, plan.studyId)).for('update');
   if (version?.state !== 'approved' || version.revision !== plan.seriesRevision) {
     throw new JobRefused('The series was changed while it was being laid out. Nothing was placed.');
   }
@@ -27,6 +30,14 @@ async function assertUnchanged(tx: Transaction, job: Job, plan: LayOutPlan) {
     throw new JobRefused(
       'The calendar was changed while the sessions were being laid out. Nothing was placed; press again.',
     );
+  }
+  const held = await heldByStop(tx, {
+    labId: job.labId,
+    studyId: plan.studyId,
+    runs: plan.runs.map((r) => ({ preparationId: r.preparation.id, dose: r.dose })),
+  });
+  if (held) {
+    throw new JobRefused(`${held} Nothing was placed; the lab head lifts it, with a reason.`);
   }
   return { version, timeZone: place?.timeZone ?? 'UTC' };
 }
