@@ -46,7 +46,12 @@ export async function enqueue(
     .insert(job)
     .values({ id: jobId, ...question, inputHash, engineVersion, activeKey })
     .onDuplicateKeyUpdate({ set: { activeKey } });
-  const [row] = await conn.select({ id: job.id }).from(job).where(eq(job.activeKey, activeKey));
+  // The row as it is now: a transaction that read earlier would not see somebody else's.
+  const [row] = await conn
+    .select({ id: job.id })
+    .from(job)
+    .where(eq(job.activeKey, activeKey))
+    .for('update');
   const active = row?.id ?? jobId;
   return { jobId: active, joined: active !== jobId };
 }
