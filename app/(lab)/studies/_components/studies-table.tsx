@@ -10,10 +10,8 @@ function Title({ row }: { row: StudyListRow }) {
         {row.title}
       </Link>
       <span className="block text-caption font-normal text-ink2">
-        {row.perturbs}
-        {row.simulated ? (
-          <span className="ml-2 border border-edge px-1 whitespace-nowrap">simulated readings</span>
-        ) : null}
+        <span className="whitespace-nowrap">{row.perturbs}</span>
+        {row.simulated ? <span className="whitespace-nowrap">; simulated readings</span> : null}
       </span>
     </span>
   );
@@ -34,7 +32,7 @@ function Lines({ lines, none }: { lines: string[]; none: string }) {
 
 function Reached({ row }: { row: StudyListRow }) {
   return (
-    <span className="block min-w-36 leading-5">
+    <span className="block min-w-28 leading-5">
       {row.reached.name}, {row.reached.fact}
       {row.missing ? (
         <span className="block text-caption text-ink2">waits for {row.missing}</span>
