@@ -13,6 +13,9 @@ const root = dirname(dirname(fileURLToPath(import.meta.url)));
 let installation;
 let signalled = false;
 
+// Whoever read our output may be gone before we are.
+for (const stream of [process.stdout, process.stderr]) stream.on('error', () => {});
+
 async function end(status) {
   try {
     await installation?.stop();
@@ -23,15 +26,24 @@ async function end(status) {
   process.exit(status);
 }
 
-for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
-  process.on(signal, () => {
-    // A terminal and npm both send it: the second says nothing new.
-    if (signalled) return;
-    signalled = true;
-    console.log('\n· Ending …');
-    end(0);
-  });
+function askedToEnd() {
+  // A terminal and npm both send a signal: the second says nothing new.
+  if (signalled) return;
+  signalled = true;
+  console.log('\n· Ending …');
+  end(0);
 }
+
+for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, askedToEnd);
+
+/** npm starts us through a shell that passes no signal on: its death is the signal. */
+function endWithNpm() {
+  const parent = process.ppid;
+  setInterval(() => {
+    if (process.ppid !== parent) askedToEnd();
+  }, 250).unref();
+}
+if (process.env.npm_lifecycle_event !== undefined) endWithNpm();
 
 try {
   checkNodeVersion();

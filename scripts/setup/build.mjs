@@ -8,8 +8,9 @@ import { run } from './processes.mjs';
 import { say, step } from './progress.mjs';
 
 const sourceFolders = ['app', 'components', 'db', 'fonts', 'lib', 'public', 'scripts'];
-const sourceFiles = /\.(ts|tsx|mjs|json)$/;
-const leftAside = /^(next-env\.d\.ts|biome\.json|vitest\.config\.ts|playwright\.config\.ts)$/;
+/** At the root: TypeScript that is served (proxy, instrumentation, settings) and what decides the build. */
+const sourceFiles = /^(.+\.ts|package(-lock)?\.json|tsconfig\.json|postcss\.config\.mjs)$/;
+const leftAside = /^(next-env\.d|vitest\.config|playwright\.config|drizzle\.config)\.ts$/;
 
 /**
  * Builds the web server and the scripts unless what stands there was built from these very sources.

@@ -15,12 +15,16 @@ import { readyText } from './ready-text.mjs';
 import { lastLines, Supervisor } from './supervisor.mjs';
 import { ensureMariadb } from './system-packages.mjs';
 
+/** Longest wait for a predecessor that is shutting its database down. */
+const endPatienceSeconds = 120;
+
 /** One running Swaypoint: a data folder, its database, the web server, the worker, the mail catcher. */
 export class Installation {
   #root;
   #configuration;
   #lock;
   #locked = false;
+  #ending = false;
   #mariadb = null;
   #catcher = null;
   #supervisor;
@@ -66,6 +70,8 @@ export class Installation {
 
   /** Ends everything in order: those who write first, the database last. */
   async stop() {
+    this.#ending = true;
+    this.#record();
     await endCommands();
     await this.#supervisor.stop('web server', 'worker');
     await this.#supervisor.stop('mail catcher');
@@ -77,7 +83,7 @@ export class Installation {
   }
 
   async #takeFolder() {
-    const lock = takeLock(this.#lock, this.#facts());
+    const lock = await takeLockAfterEnd(this.#lock, this.#facts());
     if (!lock.taken) {
       throw new Problem(
         `Swaypoint is already running on ${this.#configuration.dataFolder} (process ${lock.holder.pid}, ${lock.holder.url}).\n` +
@@ -208,6 +214,7 @@ export class Installation {
       url: this.#configuration.publicUrl,
       catcherUrl: this.#catcher?.url ?? null,
       children: this.#supervisor.list(),
+      ending: this.#ending,
     };
   }
 
@@ -217,5 +224,16 @@ export class Installation {
 
   #logFile(name) {
     return join(this.#configuration.dataFolder, 'logs', `${name.replace(' ', '-')}.log`);
+  }
+}
+
+/** Takes the lock, waiting for a holder that is on its way out. */
+async function takeLockAfterEnd(path, facts) {
+  const until = performance.now() + endPatienceSeconds * 1000;
+  for (let said = false; ; said = true) {
+    const lock = takeLock(path, facts);
+    if (lock.taken || !lock.holder.ending || performance.now() > until || isEnding()) return lock;
+    if (!said) say('the last Swaypoint is still ending; waiting for it');
+    await new Promise((resolve) => setTimeout(resolve, 200));
   }
 }
