@@ -48,7 +48,13 @@ function workInThread(db: Db, job: Job, owner: string, threadFile: string): Prom
       else if (message.kind === 'answer') end({ outcome: 'answered', answer: message.answer });
       else end({ outcome: 'failed', message: message.message });
     });
-    thread.on('error', (error) => end({ outcome: 'failed', message: error.message }));
+    thread.on('error', (error) => {
+      log.error({ err: error, kind: job.kind }, 'the thread of a calculation broke off');
+      end({
+        outcome: 'failed',
+        message: 'The calculation broke off. Your inputs are kept; ask again, then the lab head.',
+      });
+    });
     thread.on('exit', () =>
       end({ outcome: 'failed', message: 'The calculation ended without an answer.' }),
     );
