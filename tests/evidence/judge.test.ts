@@ -112,4 +112,23 @@ describe('judge', () => {
     expect(fast.verdict).toBe('sustained');
     expect(fast.period!.value).toBeCloseTo(6 * Math.PI, 1);
   });
+
+  it('calls regular spikes sustained, and single-reading ones a rhythm at least', () => {
+    const times = evenTimes(240);
+    const r = random(12);
+    const spiky = (width: number) => times.map((t) => (t % 24 < width ? 1 : 0) + 0.02 * r.normal());
+    for (const width of [1, 2, 3]) {
+      const answer = judge({ times, values: spiky(width) });
+      expect(Math.abs(answer.period!.value / 24 - 1)).toBeLessThan(0.02);
+      if (width > 1) expect(answer.verdict).toBe('sustained');
+      else expect(['sustained', 'undecided']).toContain(answer.verdict);
+    }
+  });
+
+  it('says what to do where most of the record is a gap', () => {
+    const times = [...evenTimes(30), ...evenTimes(30).map((t) => t + 1e6)];
+    const answer = judge({ times, values: times.map((t) => Math.sin(t)) });
+    expect(answer.verdict).toBe('undecided');
+    expect(settles(answer.reasons)).toBe(true);
+  });
 });

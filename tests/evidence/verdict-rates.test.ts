@@ -44,7 +44,7 @@ const NOT_SUSTAINED: Family[] = [
 ];
 
 describe('records without a sustained rhythm', () => {
-  const runs = 25;
+  const runs = 20;
   let sustained = 0;
   it.each(NOT_SUSTAINED)('%s: hardly ever called sustained', (_, make) => {
     const counts = count(make, runs);
@@ -74,7 +74,7 @@ describe('limit cycles, 12 readings a cycle, noise up to a fifth of the amplitud
     ['relaxation shape', (r) => limitCycle(r, evenTimes(121), 12, 0.15, { shape: relaxation })],
   ];
   it.each(cases)('%s: called sustained at least nine times in ten', (_, make) => {
-    expect(count(make, 30).sustained).toBeGreaterThanOrEqual(27);
+    expect(count(make, 20).sustained).toBeGreaterThanOrEqual(18);
   });
   it('three cycles are not enough to call it', () => {
     const counts = count((r) => limitCycle(r, evenTimes(36), 12, 0.1), 20);
@@ -94,17 +94,17 @@ describe('nudges that die away', () => {
     ['10 cycles, −0.1 a cycle', (r) => nudge(r, 10, 12, -0.1, 0.2)],
   ];
   it.each(cases)('%s: called damped at least nine times in ten', (_, make) => {
-    const counts = count(make, 30);
-    expect(counts.damped).toBeGreaterThanOrEqual(27);
+    const counts = count(make, 20);
+    expect(counts.damped).toBeGreaterThanOrEqual(18);
     expect(counts.sustained).toBe(0);
   });
   it('the 90 % interval of the growth rate holds the truth in 80 to 98 of 100', () => {
     let inside = 0;
-    for (let seed = 1; seed <= 50; seed++) {
+    for (let seed = 1; seed <= 40; seed++) {
       const rate = judge(nudge(random(seed), 6, 12, -0.2, 0.1)).growthRate!;
       if (rate.low <= -0.2 / 12 && rate.high >= -0.2 / 12) inside++;
     }
-    expect(inside).toBeGreaterThanOrEqual(40);
-    expect(inside).toBeLessThanOrEqual(49);
+    expect(inside).toBeGreaterThanOrEqual(32);
+    expect(inside).toBeLessThanOrEqual(39);
   });
 });

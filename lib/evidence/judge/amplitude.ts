@@ -16,6 +16,7 @@ export function phasors(
   cyclesEach = 1,
 ): Phasor[] {
   const blocks = Math.floor((frequency * (1 + 1e-9)) / cyclesEach);
+  if (blocks > t.length / 3) return [];
   const result: Phasor[] = [];
   for (let b = 0; b < blocks; b++) {
     const index: number[] = [];

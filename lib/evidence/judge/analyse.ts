@@ -170,7 +170,7 @@ function frequencyBounds(series: Series, expected: JudgeRequest['expectedPeriod'
   const even = gaps.every((g) => Math.abs(g / middle - Math.round(g / middle)) < 1e-3);
   const nyquist = 0.5 / middle;
   const n = series.t.length;
-  let maxFrequency = even ? nyquist : Math.min(2 * n, Math.max(nyquist, n / 2));
+  let maxFrequency = even ? Math.min(4 * n, nyquist) : Math.min(2 * n, Math.max(nyquist, n / 2));
   if (!even && expected) {
     maxFrequency = Math.min(4 * n, Math.max(maxFrequency, (1.2 * series.span) / expected.low));
   }
@@ -188,8 +188,10 @@ function search(series: Series, bounds: Bounds, floor: number) {
   const highest = Math.max(...spectrum.map((p) => p.power));
   const falseAlarm = baluevFalseAlarm(highest, series.t, maxFrequency);
   const starts = peaks.map((p) => p.frequency);
+  const strong = leadingPeaks(spectrum, 40).filter((p) => p.power > 0.6 * highest);
+  const lowest = Math.min(...strong.map((p) => p.frequency), ...starts);
   if (starts.length === 0) starts.push(minFrequency * 1.05);
-  let oscillation = bestOscillation(series, starts, degree, bounds, floor);
+  let oscillation = bestOscillation(series, starts, degree, bounds, floor, lowest);
   for (const other of [1, 2, 3]) {
     if (oscillation === null || other === oscillation.trendDegree) continue;
     const again = fitOscillation(series, oscillation, oscillation.harmonics, other, bounds);

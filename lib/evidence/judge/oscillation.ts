@@ -109,8 +109,8 @@ export function bic(rss: number, n: number, k: number, floor: number): number {
 
 /**
  * The best oscillation over several starting frequencies: first with one harmonic, then with as
- * many as the sampling carries and the criterion pays for. Half and a third of the best frequency are
- * tried too, since a spiky rhythm can have its strongest line at an overtone.
+ * many as the sampling carries and the criterion pays for. Half and a third of the best frequency, and the
+ * lowest strong line (`lowest`), are tried too, since a spiky rhythm can have its strongest line at an overtone.
  */
 export function bestOscillation(
   series: Pick<Series, 't' | 'y'>,
@@ -118,6 +118,7 @@ export function bestOscillation(
   trendDegree: number,
   bounds: Bounds,
   floor: number,
+  lowest: number,
 ): Oscillation | null {
   let best: Oscillation | null = null;
   for (const frequency of frequencies) {
@@ -128,20 +129,16 @@ export function bestOscillation(
   }
   if (best === null) return null;
   const simple = best;
-  const candidates = [1, 2, 3].map((part) =>
-    addHarmonics(series, { ...simple, frequency: simple.frequency / part }, part, bounds, floor),
-  );
-  const score = (fit: Oscillation | null, part: number) =>
-    fit === null
-      ? Infinity
-      : bic(fit.rss, series.t.length, 2 * fit.harmonics, floor) + (part > 1 ? 12 : 0);
-  let chosen = candidates[0] ?? simple;
-  for (let k = 1; k < candidates.length; k++) {
-    if (score(candidates[k]!, k + 1) < score(chosen, candidates.indexOf(chosen) + 1)) {
-      chosen = candidates[k]!;
-    }
-  }
-  return chosen;
+  const starts = [1, 2, 3].map((part) => ({ ...simple, frequency: simple.frequency / part }));
+  starts.push({ ...simple, growth: 0, frequency: lowest });
+  const score = (fit: Oscillation, k: number) =>
+    bic(fit.rss, series.t.length, 2 * fit.harmonics, floor) + (k > 0 ? 12 : 0);
+  let chosen = { fit: simple, score: Infinity };
+  starts.forEach((start, k) => {
+    const fit = addHarmonics(series, start, Math.min(k + 1, 3), bounds, floor);
+    if (fit && score(fit, k) < chosen.score) chosen = { fit, score: score(fit, k) };
+  });
+  return chosen.fit;
 }
 
 function addHarmonics(

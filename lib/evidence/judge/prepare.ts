@@ -95,7 +95,9 @@ function standardise(raw: Raw) {
   const n = raw.t.length;
   const span = raw.t[n - 1]! - raw.t[0]!;
   const mean = raw.y.reduce((s, v) => s + v / n, 0);
-  const scale = Math.sqrt(raw.y.reduce((s, v) => s + (v - mean) ** 2 / n, 0));
+  // Squares of very large or small values would leave the range of numbers: first by the largest.
+  const largest = raw.y.reduce((s, v) => Math.max(s, Math.abs(v - mean)), 0);
+  const scale = largest * Math.sqrt(raw.y.reduce((s, v) => s + ((v - mean) / largest) ** 2 / n, 0));
   const series = {
     t: Float64Array.from(raw.t, (v) => (v - raw.t[0]!) / span),
     y: Float64Array.from(raw.y, (v) => (v - mean) / scale),

@@ -68,6 +68,13 @@ function whatLacks(series: Series, expected: JudgeRequest['expectedPeriod']): st
       ];
     }
   }
+  const widest = series.t.reduce((w, v, i) => Math.max(w, i > 0 ? v - series.t[i - 1]! : 0), 0);
+  if (widest > 0.5) {
+    return [
+      'More than half of the time recorded is one gap without readings.',
+      'To settle it, judge the parts on either side of the gap by themselves, or record without it.',
+    ];
+  }
   if (n < ENOUGH_READINGS) {
     return [
       `With ${n} readings a rhythm could have gone unseen.`,
