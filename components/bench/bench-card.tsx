@@ -1,6 +1,7 @@
 'use client';
 
-import type { ReactNode } from 'react';
+import clsx from 'clsx';
+import { type ReactNode, useEffect, useRef } from 'react';
 import { OnsetRibbon, type RibbonData } from '@/components/ribbon';
 import { ActKey, StopKey } from './act-keys';
 import { BenchHead, type BenchHeadProps } from './bench-head';
@@ -14,6 +15,8 @@ export type BenchCardProps = {
   head: BenchHeadProps;
   /** with its index pointer `here`; left out on a blinded card */
   ribbon?: RibbonData;
+  /** changes with what the plate shows; the keyboard and the reader then go to the plate */
+  stepKey: string;
   /** "Step 4 of 9" */
   step: string;
   instruction: ReactNode;
@@ -63,10 +66,23 @@ export function BenchCard(props: BenchCardProps) {
 }
 
 function Step(props: BenchCardProps) {
+  // A caution and a field together need the room that the large counter would take.
+  const tight = props.caution !== undefined && props.field !== undefined;
+  const plate = useRef<HTMLElement>(null);
+  const shown = useRef(props.stepKey);
+  useEffect(() => {
+    if (shown.current === props.stepKey) return;
+    shown.current = props.stepKey;
+    const section = plate.current;
+    if (section && !section.contains(document.activeElement)) section.focus();
+  }, [props.stepKey]);
   return (
     <section
-      aria-labelledby="bench-instruction"
-      className="mt-4 flex flex-1 flex-col rounded-key border border-rule bg-plate p-4 tablet:min-h-[562px] tablet:px-[31px] tablet:pt-[21px] tablet:pb-8"
+      ref={plate}
+      tabIndex={-1}
+      aria-labelledby={props.panel ? undefined : 'bench-instruction'}
+      aria-label={props.panel ? 'This session' : undefined}
+      className="mt-4 flex flex-1 flex-col rounded-key border border-rule bg-plate p-4 tablet:min-h-[562px] tablet:px-[31px] tablet:pt-[21px] tablet:pb-5"
     >
       {props.panel ?? (
         <>
@@ -81,16 +97,20 @@ function Step(props: BenchCardProps) {
             <p className="mt-3 border-l-[3px] border-ink pl-4 text-bench">{props.caution}</p>
           ) : null}
           {props.countdown ? (
-            <div className="mt-8 tablet:mt-[30px]">
-              <Countdown {...props.countdown} />
+            <div className={tight ? 'mt-5' : 'mt-8 tablet:mt-[30px]'}>
+              <Countdown {...props.countdown} tight={tight} />
             </div>
           ) : null}
           {props.field ? (
-            <div className="mt-6">
+            <div className={tight ? 'mt-4' : 'mt-6'}>
               <ValueField {...props.field} />
             </div>
           ) : null}
-          {props.next ? <p className="mt-6 text-bench text-ink2">{props.next}</p> : null}
+          {props.next ? (
+            <div className={clsx('text-bench text-ink2', tight ? 'mt-4' : 'mt-6')}>
+              {props.next}
+            </div>
+          ) : null}
         </>
       )}
     </section>

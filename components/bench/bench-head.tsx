@@ -3,8 +3,10 @@ import { unitText } from '@/lib/format';
 export type BenchHeadProps = {
   /** vessel, well or volunteer's code */
   identity: string;
-  /** study and run */
+  /** the study; cut with an ellipsis where there is no room */
   line: string;
+  /** what of that line is never cut: ", run 7" */
+  tail?: string;
   /** dose in bench units, in print; absent on a blinded card */
   dose?: string;
   /** UCUM code of the dose */
@@ -19,15 +21,20 @@ export type BenchHeadProps = {
 
 /** Who is treated, at the left; how much, at the right. */
 export function BenchHead(props: BenchHeadProps) {
-  const { identity, line, dose, doseUnit, control, when, blindCode } = props;
+  const { identity, line, tail, dose, doseUnit, control, when, blindCode } = props;
   const blind = blindCode !== undefined;
   return (
-    <div className="flex flex-wrap justify-between gap-x-8 gap-y-3 tablet:min-h-[84px]">
+    <div className="grid gap-x-8 gap-y-3 tablet:h-[84px] tablet:grid-cols-[minmax(0,1fr)_auto]">
       <div className="min-w-0">
-        <h1 className="text-identity font-semibold break-words">{identity}</h1>
-        <p className="mt-[5px] text-bench text-ink2">{line}</p>
+        <h1 className="truncate text-identity font-semibold" title={identity}>
+          {identity}
+        </h1>
+        <p className="mt-[5px] flex text-bench text-ink2" title={`${line}${tail ?? ''}`}>
+          <span className="truncate">{line}</span>
+          <span className="shrink-0 whitespace-pre">{tail}</span>
+        </p>
       </div>
-      <div className="min-w-0 tablet:text-right">
+      <div className="min-w-0 whitespace-nowrap tablet:text-right">
         <p className="font-mono text-identity font-semibold">
           {blind ? (
             <>
@@ -45,8 +52,8 @@ export function BenchHead(props: BenchHeadProps) {
         <p className="mt-[5px] text-bench text-ink2">
           {!blind && control ? (
             <>
-              <span className="font-mono">{`${control.value} `}</span>
-              {`${unitText(control.unit)}, `}
+              <span className="font-mono">{control.value}</span>
+              {unitText(control.unit) === '' ? ', ' : `\u202f${unitText(control.unit)}, `}
             </>
           ) : null}
           {when}

@@ -1,9 +1,8 @@
 'use client';
 
 import clsx from 'clsx';
-import type { ReactNode } from 'react';
 import { useNow } from '@/components/ui/use-now';
-import { clockText, countdown, durationText } from '@/lib/format';
+import { clockText, countdown, durationText, zoned } from '@/lib/format';
 import { TimeTrack } from './time-track';
 
 export type CountdownProps = {
@@ -19,11 +18,15 @@ export type CountdownProps = {
   /** the track's ends; the stretch from the last act to well past the window */
   trackFrom: string;
   trackTo: string;
+  /** smaller figures, where a caution and a field need the room */
+  tight?: boolean;
 };
 
-const DAY = 86_400;
+const HOUR = 3600;
+/** Below this a side of the window counts as none. */
+const NO_LEEWAY_MS = 30_000;
 
-/** Counter of 128 px, the words beside it, and the straight track of the time around it. */
+/** Counter of 128 px (beyond an hour in words), what it counts to beside it, and the straight track of the time around it. */
 export function Countdown(props: CountdownProps) {
   const now = useNow(props.now, 1000);
   const at = (iso: string) => Date.parse(iso);
@@ -36,26 +39,30 @@ export function Countdown(props: CountdownProps) {
       ? `past the window of ${props.what}, due at`
       : `since ${props.what} was due at`
     : `until ${props.what} is due at`;
-  const far = Math.abs(seconds) >= DAY;
+  const far = Math.abs(seconds) >= HOUR;
   return (
     <>
       <div className="grid items-center gap-x-4 gap-y-2 tablet:grid-cols-[400px_minmax(0,1fr)]">
         <p
           role="timer"
           className={clsx(
-            'font-mono leading-none font-semibold',
-            far && 'text-instruction',
-            !far && text.length > 5 && 'text-[clamp(56px,11vw,88px)]',
-            !far &&
-              text.length <= 5 &&
-              '-ml-1.5 text-[clamp(80px,15.65vw,128px)] tracking-[-0.07em]',
+            'leading-none font-semibold whitespace-nowrap',
+            far
+              ? 'py-2 text-[48px] tablet:text-[64px]'
+              : props.tight
+                ? 'font-mono text-[clamp(72px,10.8vw,88px)] tracking-[-0.07em]'
+                : '-ml-1.5 font-mono text-[clamp(80px,15.65vw,128px)] tracking-[-0.07em]',
           )}
         >
-          {far ? durationText(Math.abs(seconds) / 60) : text}
+          {far ? durationText(Math.floor(Math.abs(seconds) / 60)) : text}
         </p>
         <p className="pt-1 text-bench-key">
-          {words} <span className="font-mono">{clockText(due, props.zone)}</span>
-          <WindowWords earliest={at(props.earliest)} due={due} latest={at(props.latest)} />
+          {words} <span className="font-mono">{momentText(due, now, props.zone)}</span>
+          <span className="block text-ink2">
+            {windowWords({ earliest: at(props.earliest), due, latest: at(props.latest) }, (t) =>
+              momentText(t, due, props.zone),
+            )}
+          </span>
         </p>
       </div>
       <TimeTrack
@@ -70,17 +77,25 @@ export function Countdown(props: CountdownProps) {
   );
 }
 
-type WindowProps = { earliest: number; due: number; latest: number };
+/** "14:36", with the day before it when that is not the day of `beside`. */
+function momentText(at: number, beside: number, zone: string): string {
+  const moment = zoned(at, zone);
+  if (moment.hasSame(zoned(beside, zone), 'day')) return clockText(at, zone);
+  return moment.toFormat('ccc d LLL, HH:mm');
+}
 
-function WindowWords({ earliest, due, latest }: WindowProps): ReactNode {
-  const before = (due - earliest) / 60_000;
-  const after = (latest - due) / 60_000;
-  const same = Math.abs(before - after) < 0.5;
-  return (
-    <span className="block text-ink2">
-      {same
-        ? `${durationText(after)} either side is on time`
-        : `${durationText(before)} before to ${durationText(after)} after is on time`}
-    </span>
-  );
+type Window = { earliest: number; due: number; latest: number };
+
+/** What still counts as on time: "10 min either side is on time", "until 07:05 is on time". */
+export function windowWords(window: Window, moment: (at: number) => string): string {
+  const { earliest, due, latest } = window;
+  const before = due - earliest;
+  const after = latest - due;
+  if (before < NO_LEEWAY_MS && after < NO_LEEWAY_MS) return 'to the minute';
+  if (before < NO_LEEWAY_MS) return `until ${moment(latest)} is on time`;
+  if (after < NO_LEEWAY_MS) return `from ${moment(earliest)} is on time`;
+  if (Math.abs(before - after) < NO_LEEWAY_MS) {
+    return `${durationText(after / 60_000)} either side is on time`;
+  }
+  return `${moment(earliest)} to ${moment(latest)} is on time`;
 }

@@ -1,5 +1,6 @@
 'use client';
 
+import clsx from 'clsx';
 import type { ReactNode } from 'react';
 
 export type ExceptionKeysProps = {
@@ -7,12 +8,22 @@ export type ExceptionKeysProps = {
   onSkip?: () => void;
   onNote?: () => void;
   onPhoto?: () => void;
+  onLost?: () => void;
   disabled?: boolean;
 };
 
+/** Columns of the tablet's row. */
+const PLACE = {
+  late: 'tablet:col-start-1 desk:col-start-auto',
+  skip: 'tablet:col-start-2 desk:col-start-auto',
+  note: 'tablet:col-start-3 desk:col-start-auto',
+  photo: 'tablet:col-start-4 desk:col-start-auto',
+  lost: 'tablet:col-start-4 desk:col-start-auto',
+} as const;
+
 const stroke = { fill: 'none', stroke: 'currentColor', strokeWidth: 2 };
 
-const GLYPHS: Record<'late' | 'skip' | 'note' | 'photo', ReactNode> = {
+const GLYPHS: Record<'late' | 'skip' | 'note' | 'photo' | 'lost', ReactNode> = {
   late: (
     <g {...stroke}>
       <circle cx={10} cy={10} r={9} />
@@ -27,31 +38,42 @@ const GLYPHS: Record<'late' | 'skip' | 'note' | 'photo', ReactNode> = {
       <circle cx={10} cy={10.5} r={3.5} />
     </g>
   ),
+  lost: <path d="M7 0H13V7.5H7ZM7 12.5H13V20H7Z" fill="currentColor" />,
 };
 
-/** Exceptions, one at a time; only those that can be recorded here are shown. */
+/**
+ * Exceptions, one at a time; only those that can be recorded here are shown, each always in its own
+ * place, so that a hand finds it without looking.
+ */
 export function ExceptionKeys(props: ExceptionKeysProps) {
   const keys = [
     { name: 'late' as const, word: 'Took it late', act: props.onLate },
     { name: 'skip' as const, word: 'Skip', act: props.onSkip },
     { name: 'note' as const, word: 'Note', act: props.onNote },
     { name: 'photo' as const, word: 'Photo', act: props.onPhoto },
+    { name: 'lost' as const, word: 'Lost', rest: ' preparation', act: props.onLost },
   ].filter((k) => k.act !== undefined);
   if (keys.length === 0) return null;
   return (
-    <div className="grid auto-cols-fr grid-cols-2 gap-4 tablet:grid-flow-col tablet:grid-cols-none desk:grid-flow-row desk:grid-cols-2">
+    <div className="grid grid-cols-2 gap-4 tablet:grid-cols-4 desk:grid-cols-2">
       {keys.map((k) => (
         <button
           key={k.name}
           type="button"
           onClick={k.act}
           disabled={props.disabled}
-          className="press flex h-[72px] items-center justify-center gap-3.5 rounded-key border-[1.5px] border-edge bg-plate px-2 text-bench-key leading-6 font-semibold hover:border-ink hover:bg-well disabled:border-dashed disabled:text-ink2"
+          className={clsx(
+            'press flex h-[72px] items-center justify-center gap-3.5 rounded-key border-[1.5px] border-edge bg-plate px-2 text-bench-key leading-6 font-semibold hover:border-ink hover:bg-well disabled:border-dashed disabled:text-ink2',
+            PLACE[k.name],
+          )}
         >
           <svg width={20} height={20} viewBox="0 0 20 20" aria-hidden="true" className="shrink-0">
             {GLYPHS[k.name]}
           </svg>
-          {k.word}
+          <span>
+            {k.word}
+            {'rest' in k ? <span className="sr-only">{k.rest}</span> : null}
+          </span>
         </button>
       ))}
     </div>

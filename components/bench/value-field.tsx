@@ -12,6 +12,8 @@ export type ValueFieldProps = {
   onChange: (value: string) => void;
   /** what − and + take and add */
   step: number;
+  /** what the first press of − or + gives while nothing is typed */
+  from?: number;
   min?: number;
   max?: number;
   /** "usual 4.5 to 5.5 mL" */
@@ -23,7 +25,11 @@ const key =
   'press size-20 shrink-0 rounded-key border-[1.5px] border-edge bg-plate text-[36px] leading-none font-semibold hover:border-ink hover:bg-well';
 
 /** The value one step on, held between its bounds, with the decimals of step and value. */
-export function moved({ value, step, min, max }: ValueFieldProps, direction: 1 | -1): string {
+export function moved(
+  { value, step, from: first, min, max }: Omit<ValueFieldProps, 'onChange'>,
+  direction: 1 | -1,
+): string {
+  if (first !== undefined && value.trim() === '') return String(first);
   const now = Number(value);
   const from = Number.isFinite(now) && value.trim() !== '' ? now : (min ?? 0);
   const held = Math.min(Math.max(from + direction * step, min ?? -Infinity), max ?? Infinity);

@@ -36,6 +36,8 @@ type Facts = {
   started: boolean;
   /** Instant from which the run's minutes count: the setting, or its planned start. */
   zero: Date;
+  /** The appointment: nobody is there before it. */
+  startsAt: Date;
 };
 
 const instructions: Record<VisitKind, (f: Facts, v: StepVisit) => { say: string; act: string }> = {
@@ -60,11 +62,22 @@ function extra(label: string): string {
   return rest === '' ? '' : `. ${rest.charAt(0).toUpperCase()}${rest.slice(1)}`;
 }
 
+/**
+ * When a visit is due: its first one at the appointment, later ones at their own minute of the run,
+ * though never before the appointment; always inside the visit's own window.
+ */
+function dueAt(v: StepVisit, facts: Facts, first: boolean): string {
+  const own = facts.zero.getTime() + v.atMinutes * 60_000;
+  const begins = facts.startsAt.getTime();
+  const due = first ? begins : Math.max(own, begins);
+  const held = Math.min(Math.max(due, v.earliest.getTime()), v.latest.getTime());
+  return new Date(held).toISOString();
+}
+
 /** The steps of a session: check and start, then one a visit. */
 export function stepsOf(visits: StepVisit[], facts: Facts): Step[] {
   const ordered = [...visits].sort((a, b) => a.atMinutes - b.atMinutes);
   const acts = ordered.map((v) => ({ v, ...instructions[v.kind](facts, v) }));
-  const at = (v: StepVisit) => new Date(facts.zero.getTime() + v.atMinutes * 60_000).toISOString();
   const first = acts[0];
   const start: Step = {
     key: 'start',
@@ -73,7 +86,7 @@ export function stepsOf(visits: StepVisit[], facts: Facts): Step[] {
     instruction: `Check: preparation ${facts.preparation}, on ${facts.rig}, planned at ${facts.dose}`,
     act: 'It is the right one',
     next: first?.say ?? null,
-    due: first ? at(first.v) : null,
+    due: first ? dueAt(first.v, facts, true) : null,
     earliest: first?.v.earliest.toISOString() ?? null,
     latest: first?.v.latest.toISOString() ?? null,
     done: facts.started,
@@ -89,7 +102,7 @@ export function stepsOf(visits: StepVisit[], facts: Facts): Step[] {
       instruction: say,
       act,
       next: acts[i + 1]?.say ?? null,
-      due: at(v),
+      due: dueAt(v, facts, i === 0),
       earliest: v.earliest.toISOString(),
       latest: v.latest.toISOString(),
       done: v.doneAt !== null,

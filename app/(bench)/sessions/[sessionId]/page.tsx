@@ -45,6 +45,7 @@ export default async function SessionPage({ params }: { params: Promise<{ sessio
     doseLabel: study.doseLabel,
     started: session.state === 'started' || session.state === 'done',
     zero,
+    startsAt: session.startsAt,
   });
   return (
     <BenchRoom
@@ -68,7 +69,8 @@ export default async function SessionPage({ params }: { params: Promise<{ sessio
       head={{
         identity:
           preparation.code.length <= 2 ? `Preparation ${preparation.code}` : preparation.code,
-        line: `${study.title}, run ${run.number}, ${rig.name}${study.simulated ? ', simulated' : ''}`,
+        line: study.title,
+        tail: `, run ${run.number}${study.simulated ? ', simulated' : ''}`,
         dose: figure(run.dose, 4),
         doseUnit: study.doseUnit,
         control: shown ? { value: figure(run.control, 3), unit: shown.ribbon.unit } : undefined,

@@ -1,6 +1,6 @@
 'use client';
 
-import { useCallback, useState } from 'react';
+import { useCallback, useEffect, useState } from 'react';
 import { BenchCard, type BenchCardProps } from '@/components/bench';
 import { useAction } from '@/components/forms';
 import { clockText } from '@/lib/format';
@@ -45,12 +45,13 @@ export function BenchRoom(props: BenchRoomProps) {
   const { steps, session, studyId } = props;
   const [open, setOpen] = useState<Open>(null);
   const [value, setValue] = useState('');
-  const [undoable, setUndoable] = useState<{ visitId: string; until: number } | null>(null);
+  const [undoable, setUndoable] = useForAMinute();
+  const [stopped, setStopped] = useState<string | null>(null);
   const close = useCallback(() => setOpen(null), []);
   const start = useAction(startSessionAction);
   const record = useAction(recordVisitAction, { onDone: () => setValue('') });
   const undo = useAction(undoVisitAction, { onDone: () => setUndoable(null) });
-  const stop = useAction(pressStopAction);
+  const stop = useAction(pressStopAction, { onDone: (s) => setStopped(s.stopId) });
   const slip = useAction(slipAction);
   const current = steps.findIndex((s) => !s.done);
   const step = steps[current];
@@ -65,7 +66,7 @@ export function BenchRoom(props: BenchRoomProps) {
       void start.run({ sessionId: session.id, at });
       return;
     }
-    setUndoable({ visitId: step.visitId, until: Date.now() + UNDO_MS });
+    setUndoable(step.visitId);
     const figure = value.trim() === '' ? null : Number(value.replace(',', '.'));
     const readout = props.readouts[0];
     void record.run({
@@ -82,7 +83,8 @@ export function BenchRoom(props: BenchRoomProps) {
     });
   }
 
-  const held = session.state === 'suspended';
+  // A stop pressed here is shown here, even where this session itself was over already.
+  const held = session.state === 'suspended' || props.stops.some((s) => s.id === stopped);
   const field = step && !held ? fieldOf(step, props, value, setValue) : undefined;
   const wrong =
     field !== undefined && value.trim() !== '' && !Number.isFinite(Number(value.replace(',', '.')));
@@ -100,6 +102,7 @@ export function BenchRoom(props: BenchRoomProps) {
       }}
       head={props.head}
       ribbon={props.ribbon}
+      stepKey={`${step?.key ?? 'end'} ${open ?? ''} ${held ? 'held' : ''}`}
       step={step ? `Step ${current + 1} of ${steps.length}` : ''}
       instruction={step?.instruction ?? ''}
       caution={step?.kind === 'start' ? `Stop when: ${props.stopRules}` : cautionOf(step, props)}
@@ -114,6 +117,7 @@ export function BenchRoom(props: BenchRoomProps) {
         onSkip:
           live && step.visitId && step.kind !== 'set dose' ? () => setOpen('skip') : undefined,
         onNote: props.records ? () => setOpen('note') : undefined,
+        onLost: live && step.kind !== 'start' ? () => setOpen('lost') : undefined,
         disabled: pending,
       }}
       stop={
@@ -136,17 +140,26 @@ export function BenchRoom(props: BenchRoomProps) {
       }
       saved={savedWords(props, steps)}
       undo={
-        undoable && steps.find((s) => s.visitId === undoable.visitId)?.done
+        undoable && !held && steps.find((s) => s.visitId === undoable)?.done
           ? {
               label: 'Undo, for a minute',
-              onUndo: () => void undo.run({ sessionId: session.id, visitId: undoable.visitId }),
+              onUndo: () => void undo.run({ sessionId: session.id, visitId: undoable }),
             }
-          : props.records && live && step.kind !== 'start'
-            ? { label: 'Preparation lost', onUndo: () => setOpen('lost') }
-            : undefined
+          : undefined
       }
     />
   );
+}
+
+/** A value that is forgotten after the minute in which a press may be taken back. */
+function useForAMinute() {
+  const [value, setValue] = useState<string | null>(null);
+  useEffect(() => {
+    if (value === null) return;
+    const timer = setTimeout(() => setValue(null), UNDO_MS);
+    return () => clearTimeout(timer);
+  }, [value]);
+  return [value, setValue] as const;
 }
 
 const problemAt = (problem: { message: string; mend?: string } | null) =>
@@ -157,9 +170,11 @@ function nextWords(
   problem: { message: string; mend?: string } | null,
   inField: boolean,
 ) {
+  const alone = problem !== null && !inField;
+  if (!alone && !step?.next) return undefined;
   return (
     <>
-      {problem && !inField ? (
+      {alone ? (
         <span
           role="alert"
           className="mb-3 block border-l-[3px] border-ink pl-3 font-semibold text-ink"
@@ -202,6 +217,7 @@ function fieldOf(
       value,
       onChange,
       step: step_,
+      from: props.run.dose,
       usual: `planned ${props.head.dose}`,
     };
   }

@@ -5,7 +5,7 @@ import type { BenchRoomProps } from './types';
 export function EndPanel(props: BenchRoomProps) {
   const { session, run, studyId, steps } = props;
   const cancelled = session.state === 'cancelled';
-  const collects = steps.some((s) => s.kind === 'collect' && s.done);
+  const collects = props.records && steps.some((s) => s.kind === 'collect' && s.done);
   return (
     <div>
       <h2 className="text-instruction font-medium">
