@@ -27,7 +27,12 @@ export function SignalLine({ stations }: { stations: Station[] }) {
   );
   return (
     <nav aria-label="Steps of the study" className="mt-[15px] print:hidden">
-      <ol className="hidden grid-cols-[repeat(6,minmax(0,1fr))_62px] tablet:grid">
+      <ol
+        className="hidden tablet:grid"
+        style={{
+          gridTemplateColumns: `repeat(${Math.max(stations.length - 1, 1)}, minmax(0, 1fr)) minmax(62px, max-content)`,
+        }}
+      >
         {stations.map((station, i) => (
           <StationItem key={station.name} station={station} next={stations[i + 1]} />
         ))}
@@ -48,9 +53,11 @@ function StationItem({ station, next }: { station: Station; next: Station | unde
       </span>
       <span
         className={clsx(
-          'mt-[7px] text-caption whitespace-nowrap text-ink2 desk:block',
+          'mt-[7px] truncate text-caption text-ink2 desk:block',
+          next && 'pr-3',
           station.missing || station.state === 'partly' || current ? 'block' : 'hidden',
         )}
+        title={station.fact}
       >
         {station.fact}
       </span>

@@ -8,6 +8,7 @@ import { approvedVersion } from '@/db/queries/series';
 import { studyById } from '@/db/queries/studies';
 import { stampText } from '@/lib/format';
 import { database } from '@/lib/server/database';
+import { followedJob } from '@/lib/server/evidence/followed-job';
 import { onsetView } from '@/lib/server/evidence/onset-view';
 import { runRows } from '@/lib/server/evidence/run-rows';
 import { may, pageMember } from '@/lib/server/member';
@@ -47,7 +48,7 @@ export default async function OnsetPage({ params }: { params: Promise<{ studyId:
   const judging = (
     <Judging
       studyId={studyId}
-      job={followed(job)}
+      job={followedJob(job)}
       stale={stale}
       again={may(member, 'upload readings') ? judgeAgainAction : null}
     />
@@ -108,13 +109,6 @@ export default async function OnsetPage({ params }: { params: Promise<{ studyId:
       </div>
     </>
   );
-}
-
-function followed(job: Awaited<ReturnType<typeof newestJob>>) {
-  if (!job) return null;
-  const { id, state, error } = job;
-  if (state === 'queued' || state === 'running') return { id, state: 'running' as const, error };
-  return state === 'failed' ? { id, state, error } : null;
 }
 
 function NoPrediction({ studyId }: { studyId: string }) {

@@ -10,6 +10,8 @@ import type { SystemModel } from '@/lib/contracts';
 import { uploadMapping } from '@/lib/contracts/forms/readings';
 import { figure, withUnit } from '@/lib/format';
 import { database } from '@/lib/server/database';
+import { followedJob } from '@/lib/server/evidence/followed-job';
+import { undecidedWords } from '@/lib/server/evidence/onset-view';
 import { readoutsOf } from '@/lib/server/evidence/readouts';
 import { runRecord } from '@/lib/server/evidence/run-record';
 import { type RunRow, runRows } from '@/lib/server/evidence/run-rows';
@@ -74,7 +76,7 @@ export default async function ReadingsPage({ params, searchParams }: Props) {
   const settable = rows.filter((r) => r.setAt !== null);
   return (
     <>
-      <Judging studyId={studyId} job={followed(job)} again={uploads ? judgeAgainAction : null} />
+      <Judging studyId={studyId} job={followedJob(job)} again={uploads ? judgeAgainAction : null} />
       <Found rows={rows} simulated={study.simulated} />
       <RunTable studyId={studyId} rows={rows} units={units} chosen={chosen?.id ?? null} />
       {chosen ? (
@@ -123,13 +125,6 @@ function firstToSee(rows: RunRow[]): RunRow | null {
   );
 }
 
-function followed(job: Awaited<ReturnType<typeof newestJob>>) {
-  if (!job) return null;
-  const { id, state, error } = job;
-  if (state === 'queued' || state === 'running') return { id, state: 'running' as const, error };
-  return state === 'failed' ? { id, state, error } : null;
-}
-
 function Found({ rows, simulated }: { rows: RunRow[]; simulated: boolean }) {
   const read = rows.filter((r) => r.readings > 0).length;
   const undecided = rows.filter((r) => r.verdict === 'undecided');
@@ -139,9 +134,7 @@ function Found({ rows, simulated }: { rows: RunRow[]; simulated: boolean }) {
     judged === 0
       ? `${read} of ${plural(rows.length, 'run')} ${read === 1 ? 'has' : 'have'} readings; none is judged yet.`
       : `${judged} of ${plural(rows.length, 'run')} judged${undecided.length > 0 ? `, ${undecided.length} undecided` : ''}.`;
-  const settle = undecided.flatMap((r) =>
-    (r.computed?.answer?.reasons ?? []).slice(-1).map((reason) => `Run ${r.number}: ${reason}`),
-  );
+  const settle = undecidedWords(rows);
   return (
     <div className="mb-4">
       <Finding title={title} next={settle.slice(0, 2).map((s) => <p key={s}>{s}</p>)}>

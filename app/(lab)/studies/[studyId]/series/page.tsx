@@ -91,6 +91,7 @@ export default async function SeriesPage({ params, searchParams }: Props) {
                     number: version.number,
                     revision: version.revision,
                     state: version.state,
+                    laidOut: version.laidOutAt !== null,
                   }}
                   writes={writes}
                   approves={may(member, 'approve series')}

@@ -12,6 +12,7 @@ type Props = {
     number: number;
     revision: number;
     state: 'draft' | 'submitted' | 'approved' | 'superseded';
+    laidOut: boolean;
   };
   writes: boolean;
   approves: boolean;
@@ -62,7 +63,7 @@ export function DecisionForm({ studyId, version, writes, approves }: Props) {
   if (version.state === 'approved') {
     return (
       <KeyLink kind="filled" href={`/studies/${studyId}/sessions`}>
-        {writes ? 'Lay out the sessions' : 'See the sessions'}
+        {writes && !version.laidOut ? 'Lay out the sessions' : 'See the sessions'}
       </KeyLink>
     );
   }

@@ -1,0 +1,13 @@
+import { PageBody, PageHead } from '@/components/frame';
+import { PageLoading } from '@/components/ui/page-loading';
+
+export default function Loading() {
+  return (
+    <PageBody>
+      <PageHead title="Calendar" />
+      <div className="mt-6">
+        <PageLoading what="looking up the sessions" />
+      </div>
+    </PageBody>
+  );
+}
