@@ -1,0 +1,25 @@
+import { expect, type Locator, type Page } from '@playwright/test';
+
+/** Opens a view of the calendar by its own keys. */
+export async function openCalendar(page: Page, view: 'List' | 'Week'): Promise<void> {
+  await page.goto('/calendar');
+  const key = page.getByRole('navigation', { name: 'View' }).getByRole('link', { name: view });
+  await key.click();
+  await expect(key).toHaveAttribute('aria-current', 'page');
+}
+
+/** A session in the list; steps a week on where this week does not have it. */
+export async function inList(page: Page, sessionId: string): Promise<Locator> {
+  await openCalendar(page, 'List');
+  const link = page.getByRole('main').locator(`a[href="/sessions/${sessionId}"]`);
+  const item = page.getByRole('main').getByRole('listitem').filter({ has: link });
+  if ((await link.count()) === 0) await nextWeek(page);
+  await expect(item).toBeVisible();
+  return item;
+}
+
+export async function nextWeek(page: Page): Promise<void> {
+  const before = page.url();
+  await page.getByRole('navigation', { name: 'Time' }).getByRole('link', { name: 'Later' }).click();
+  await expect(page).not.toHaveURL(before);
+}

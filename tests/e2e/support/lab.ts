@@ -1,0 +1,31 @@
+import { expect, type Page } from '@playwright/test';
+
+/** As head: somebody may work at any hour of any day, whatever the clock says when the test runs. */
+export async function giveAllHours(page: Page, name: string): Promise<void> {
+  await page.goto('/lab/hours');
+  const plate = plateOf(page, name);
+  await plate.getByRole('button', { name: 'Add hours' }).click();
+  for (const day of ['Sat', 'Sun']) await plate.getByLabel(day, { exact: true }).check();
+  await plate.getByLabel('From', { exact: true }).fill('00:00');
+  await plate.getByLabel('Until', { exact: true }).fill('23:55');
+  await plate.getByRole('button', { name: 'Add', exact: true }).click();
+  await expect(allHours(page, name)).toHaveCount(1);
+}
+
+/** Takes them back, so that later sessions are not laid into the night. */
+export async function takeAllHours(page: Page, name: string): Promise<void> {
+  await page.goto('/lab/hours');
+  await allHours(page, name)
+    .getByRole('button', { name: /^Remove / })
+    .click();
+  await expect(allHours(page, name)).toHaveCount(0);
+}
+
+const plateOf = (page: Page, name: string) =>
+  page
+    .getByRole('main')
+    .locator('section')
+    .filter({ has: page.getByRole('heading', { name, exact: true }) });
+
+const allHours = (page: Page, name: string) =>
+  plateOf(page, name).getByRole('listitem').filter({ hasText: '23:55' });
