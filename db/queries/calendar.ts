@@ -26,6 +26,8 @@ export async function sessionsBetween(
       runId: run.id,
       runNumber: run.number,
       runState: run.state,
+      setAt: run.setAt,
+      plannedStart: run.plannedStart,
       dose: run.dose,
       control: run.control,
       doseUnit: study.doseUnit,

@@ -5,23 +5,32 @@ import { EmptyState, KeyLink } from '@/components/ui';
 import { sessionsBetween, visitsOfSessions } from '@/db/queries/calendar';
 import { onsetsOfStudies, placeOnRibbon } from '@/db/queries/ribbon-places';
 import { waitingFor } from '@/db/queries/waiting';
-import { dateText, figure, withUnit } from '@/lib/format';
+import { figure, withUnit } from '@/lib/format';
 import { database } from '@/lib/server/database';
-import { type Member, pageMember } from '@/lib/server/member';
+import { type Member, may, pageMember } from '@/lib/server/member';
 import { DueList, type DueRow } from './_components/due-list';
+import { sortDue } from './_components/due-order';
 import { WaitingList } from './_components/waiting-list';
 
 export const metadata: Metadata = { title: 'Today' };
 
 const DAYS_AHEAD = 7;
+/** How far back a session that nobody began is still shown. */
+const DAYS_BACK = 14;
 
-/** The member's own sessions from this morning on; for those without any, the whole lab's. */
+/** The member's own sessions of these days; for those without any, the whole lab's. */
 async function dueRows(member: Member, now: Date): Promise<{ rows: DueRow[]; mine: boolean }> {
   const db = database();
   const labId = member.labId;
   const start = DateTime.fromJSDate(now, { zone: member.lab.timeZone }).startOf('day');
-  const span = { labId, from: start.toJSDate(), to: start.plus({ days: DAYS_AHEAD }).toJSDate() };
-  const all = (await sessionsBetween(db, span)).filter((s) => s.state !== 'cancelled');
+  const span = {
+    labId,
+    from: start.minus({ days: DAYS_BACK }).toJSDate(),
+    to: start.plus({ days: DAYS_AHEAD }).toJSDate(),
+  };
+  const all = (await sessionsBetween(db, span)).filter(
+    (s) => s.state !== 'cancelled' && (s.state !== 'done' || s.endsAt > start.toJSDate()),
+  );
   const own = all.filter((s) => s.personId === member.userId);
   const mine = own.length > 0 || member.role === 'technician';
   const shown = mine ? own : all;
@@ -40,7 +49,7 @@ async function dueRows(member: Member, now: Date): Promise<{ rows: DueRow[]; min
       run: s.runNumber,
       dose: withUnit(figure(s.dose, 4), s.doseUnit),
       what: own.map((v) => v.visit.label).join(', '),
-      sinceDose: own[0]?.visit.atMinutes ?? 0,
+      sinceDose: minutesSince(s.setAt ?? s.plannedStart, s.startsAt),
       rig: s.rig,
       person: s.person,
       place: placeOnRibbon(
@@ -51,6 +60,9 @@ async function dueRows(member: Member, now: Date): Promise<{ rows: DueRow[]; min
   });
   return { rows, mine };
 }
+
+const minutesSince = (zero: Date | null, at: Date) =>
+  zero === null ? null : (at.getTime() - zero.getTime()) / 60_000;
 
 /** One list: due, coming, waits for you. */
 export default async function TodayPage() {
@@ -66,8 +78,18 @@ export default async function TodayPage() {
       now,
     }),
   ]);
-  const today = rows.filter((r) => dateText(r.from, zone) === dateText(now, zone));
-  const coming = rows.filter((r) => dateText(r.from, zone) !== dateText(now, zone));
+  const day = DateTime.fromJSDate(now, { zone }).startOf('day');
+  const { due, coming, done } = sortDue(rows, {
+    now: now.toISOString(),
+    dayStart: day.toJSDate().toISOString(),
+    dayEnd: day.plus({ days: 1 }).toJSDate().toISOString(),
+  });
+  const shared = {
+    zone,
+    now: now.toISOString(),
+    whole: !mine,
+    records: may(member, 'record session'),
+  };
   return (
     <PageBody>
       <PageHead
@@ -80,19 +102,14 @@ export default async function TodayPage() {
         <div className="flex min-w-0 flex-col gap-8">
           {rows.length === 0 ? (
             <EmptyState
-              title="Nothing is due in the next seven days."
+              title="Nothing is due in the next seven days"
               action={<KeyLink href="/calendar">To the calendar</KeyLink>}
             />
           ) : (
             <>
-              <DueList title="Due" rows={today} zone={zone} now={now.toISOString()} whole={!mine} />
-              <DueList
-                title="Coming"
-                rows={coming}
-                zone={zone}
-                now={now.toISOString()}
-                whole={!mine}
-              />
+              <DueList title="Due" rows={due} {...shared} />
+              <DueList title="Coming" rows={coming} {...shared} />
+              <DueList title="Done today" rows={done} quiet {...shared} />
             </>
           )}
         </div>
