@@ -16,7 +16,7 @@ const nextConfig: NextConfig = {
   poweredByHeader: false,
   typedRoutes: false,
   devIndicators: false,
-  serverExternalPackages: ['mysql2', '@node-rs/argon2', 'nodemailer', 'pino', 'mathjs'],
+  serverExternalPackages: ['mysql2', '@node-rs/argon2', 'nodemailer', 'pino'],
   allowedDevOrigins: ['127.0.0.1', 'localhost'],
   // `npm test` type-checks the whole repository; a start must not fail over a file that is not served.
   typescript: { ignoreBuildErrors: true },
