@@ -12,15 +12,12 @@ export async function limitAttempts(
 ): Promise<boolean> {
   const windowStart = Math.floor(now / windowMs) * windowMs;
   const short = key.slice(0, 160);
-  await db
-    .insert(rateCount)
-    .values({ key: short, windowStart, count: 1 })
-    .onDuplicateKeyUpdate({
-      set: {
-        count: sql`if(${rateCount.windowStart} = ${windowStart}, ${rateCount.count} + 1, 1)`,
-        windowStart,
-      },
-    });
+  // In words of SQL: assignments count from left to right, and the count needs the window of before.
+  await db.execute(sql`
+    insert into ${rateCount} (rate_key, window_start, count) values (${short}, ${windowStart}, 1)
+    on duplicate key update
+      count = if(window_start = ${windowStart}, count + 1, 1),
+      window_start = ${windowStart}`);
   const [row] = await db.select().from(rateCount).where(eq(rateCount.key, short)).limit(1);
   return (row?.count ?? 1) <= most;
 }
