@@ -57,7 +57,8 @@ export function Countdown(props: CountdownProps) {
           {far ? durationText(Math.floor(Math.abs(seconds) / 60)) : text}
         </p>
         <p className="pt-1 text-bench-key">
-          {words} <span className="font-mono">{momentText(due, now, props.zone)}</span>
+          {words}{' '}
+          <span className="font-mono whitespace-nowrap">{momentText(due, now, props.zone)}</span>
           <span className="block text-ink2">
             {windowWords({ earliest: at(props.earliest), due, latest: at(props.latest) }, (t) =>
               momentText(t, due, props.zone),

@@ -67,22 +67,32 @@ function Line(props: {
 }) {
   const { session: s, zone, opened, onToggle } = props;
   return (
-    <li className="flex flex-wrap items-center gap-x-4 gap-y-1 border-b border-rule px-4 py-2 last:border-b-0">
-      <span className="w-28 font-mono">{spanText(s.from, s.to, zone)}</span>
-      <VerdictMark state={s.state === 'suspended' ? 'stopped' : s.place} />
-      <span className="w-28 font-mono font-semibold">{s.dose}</span>
-      <Link href={`/sessions/${s.id}`} className="min-w-0 flex-1 underline underline-offset-4">
-        {s.study}, run {s.run}: {s.what}
-      </Link>
-      <span className="text-ink2">
-        {s.rig}, {s.person}
-        {s.state === 'planned' ? '' : `, ${s.state === 'suspended' ? 'held by a stop' : s.state}`}
+    <li className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 gap-y-1 border-b border-rule px-4 py-2 last:border-b-0 tablet:grid-cols-[7.5rem_9rem_minmax(0,1fr)_auto]">
+      <span className="font-mono">{spanText(s.from, s.to, zone)}</span>
+      <span className="inline-flex items-center gap-2 font-mono font-semibold whitespace-nowrap">
+        <VerdictMark state={s.state === 'suspended' ? 'stopped' : s.place} />
+        {s.dose}
+      </span>
+      <span className="min-w-0">
+        <Link
+          href={`/sessions/${s.id}`}
+          className="block truncate underline underline-offset-4"
+          title={`${s.study}, run ${s.run}: ${s.what}`}
+        >
+          {`run ${s.run}, ${s.study}: ${s.what}`}
+        </Link>
+        <span className="block truncate text-caption text-ink2">
+          {s.rig}, {s.person}
+          {s.state === 'planned' ? '' : `, ${s.state === 'suspended' ? 'held by a stop' : s.state}`}
+        </span>
       </span>
       {s.movable ? (
         <Key onClick={onToggle} aria-expanded={opened} aria-label={`Move run ${s.run}, ${s.what}`}>
           Move
         </Key>
-      ) : null}
+      ) : (
+        <span />
+      )}
     </li>
   );
 }

@@ -1,11 +1,13 @@
 import { DateTime } from 'luxon';
 import type { Metadata } from 'next';
+import { withoutClosures } from '@/components/calendar/open-hours';
 import type { CalendarSession } from '@/components/calendar/types';
 import { PageBody, PageHead } from '@/components/frame';
 import { sessionsBetween, visitsOfSessions } from '@/db/queries/calendar';
-import { people } from '@/db/queries/people';
+import { absences, hoursOfLab, people } from '@/db/queries/people';
 import { onsetsOfStudies, placeOnRibbon } from '@/db/queries/ribbon-places';
-import { figure, withUnit } from '@/lib/format';
+import { figure, withUnit, zoneText } from '@/lib/format';
+import { openIntervals } from '@/lib/planner/lay-out/hours';
 import { authorise } from '@/lib/server/authorise';
 import { database } from '@/lib/server/database';
 import { type Member, pageMember } from '@/lib/server/member';
@@ -59,6 +61,29 @@ async function shownSessions(member: Member, range: ShownRange): Promise<Calenda
   }));
 }
 
+/** The hours in which anybody works, without the days on which the lab is closed. */
+async function openHours(member: Member, range: ShownRange) {
+  const of = { labId: member.labId };
+  const [hours, away] = await Promise.all([
+    hoursOfLab(database(), of),
+    absences(database(), { ...of, since: range.from }),
+  ]);
+  const open = openIntervals(
+    hours.filter((h) => h.userId !== null).map(({ rrule, from, to }) => ({ rrule, from, to })),
+    member.lab.timeZone,
+    range.from.toISOString(),
+    range.to.toISOString(),
+  );
+  const closures = away
+    .filter((a) => a.userId === null)
+    .map((a) => ({ from: a.from.toISOString(), to: a.to.toISOString() }));
+  const iso = (text: string) => new Date(text).toISOString();
+  return withoutClosures(
+    open.map((o) => ({ from: iso(o.from), to: iso(o.to) })),
+    closures,
+  );
+}
+
 export default async function CalendarPage({
   searchParams,
 }: {
@@ -67,9 +92,10 @@ export default async function CalendarPage({
   const member = await pageMember();
   const zone = member.lab.timeZone;
   const range = readRange(await searchParams, zone, new Date());
-  const [sessions, staff] = await Promise.all([
+  const [sessions, staff, open] = await Promise.all([
     shownSessions(member, range),
     people(database(), { labId: member.labId }),
+    openHours(member, range),
   ]);
   const title = DateTime.fromISO(range.date, { zone }).setLocale('en-GB');
   return (
@@ -95,6 +121,10 @@ export default async function CalendarPage({
         who={range.who}
         studyId={range.studyId}
         mayAssign={authorise(member.role, 'move session') === 'yes'}
+        mayMove={sessions.some((s) => s.movable)}
+        hasOwn={member.role !== 'observer'}
+        open={open}
+        zoneWords={zoneText(range.from, zone)}
       />
     </PageBody>
   );

@@ -107,7 +107,7 @@ export default async function TodayPage() {
             />
           ) : (
             <>
-              <DueList title="Due" rows={due} {...shared} />
+              <DueList title="Due" rows={due} empty="Nothing." {...shared} />
               <DueList title="Coming" rows={coming} {...shared} />
               <DueList title="Done today" rows={done} quiet {...shared} />
             </>

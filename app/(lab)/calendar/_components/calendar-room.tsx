@@ -6,6 +6,7 @@ import dynamic from 'next/dynamic';
 import Link from 'next/link';
 import { useRouter } from 'next/navigation';
 import { useCallback, useState } from 'react';
+import type { OpenSpan } from '@/components/calendar/open-hours';
 import { SessionList } from '@/components/calendar/session-list';
 import type { CalendarPerson, CalendarSession } from '@/components/calendar/types';
 import { ActionProblem, useAction } from '@/components/forms';
@@ -27,6 +28,13 @@ type Props = {
   who: 'everybody' | 'mine';
   studyId: string | null;
   mayAssign: boolean;
+  /** this person may move some sessions, or is asked to have some of their own */
+  mayMove: boolean;
+  hasOwn: boolean;
+  /** when anybody works in the shown span */
+  open: OpenSpan[];
+  /** "Berlin, UTC+1" */
+  zoneWords: string;
 };
 
 const VIEWS: { view: ShownView; name: string }[] = [
@@ -34,6 +42,11 @@ const VIEWS: { view: ShownView; name: string }[] = [
   { view: 'week', name: 'Week' },
   { view: 'month', name: 'Month' },
   { view: 'list', name: 'List' },
+];
+
+const WHOSE = [
+  { who: 'everybody' as const, name: 'Everybody’s' },
+  { who: 'mine' as const, name: 'Mine' },
 ];
 
 function address(props: Pick<Props, 'view' | 'date' | 'who' | 'studyId'>): string {
@@ -75,7 +88,7 @@ export function CalendarRoom(props: Props) {
       <ActionProblem problem={problem} />
       {sessions.length === 0 && view === 'list' ? (
         <EmptyState
-          title="No sessions in this week."
+          title="No sessions in this week"
           action={<KeyLink href="/studies">To the studies</KeyLink>}
         >
           {who === 'mine'
@@ -95,6 +108,7 @@ export function CalendarRoom(props: Props) {
           sessions={sessions}
           zone={zone}
           view={view}
+          open={props.open}
           date={DateTime.fromISO(date, { zone }).plus({ hours: 12 }).toISO() ?? date}
           onMove={move}
           onOpen={(s) => router.push(`/sessions/${s.id}`)}
@@ -141,14 +155,29 @@ function Steps(props: Props) {
           Later
         </Link>
       </nav>
-      <Link
-        className={clsx(key, who === 'mine' ? 'bg-selected font-bold' : 'text-ink2')}
-        href={address({ ...props, who: who === 'mine' ? 'everybody' : 'mine' })}
-      >
-        {who === 'mine' ? 'Only mine' : 'Everybody'}
-      </Link>
+      {props.hasOwn ? (
+        <nav aria-label="Whose" className="flex">
+          {WHOSE.map((w) => (
+            <Link
+              key={w.who}
+              href={address({ ...props, who: w.who })}
+              aria-current={w.who === who ? 'page' : undefined}
+              className={clsx(
+                key,
+                '-ml-px first:ml-0',
+                w.who === who ? 'bg-selected font-bold' : 'text-ink2 hover:text-ink',
+              )}
+            >
+              {w.name}
+            </Link>
+          ))}
+        </nav>
+      ) : null}
       <p className="text-caption text-ink2">
-        Times in {zone}. Drag a block to move it; by keyboard, use the list.
+        {`Times of ${props.zoneWords}.`}
+        {props.mayMove && view !== 'list'
+          ? ' Drag a block to move it; the list does the same by keyboard.'
+          : ''}
       </p>
     </div>
   );

@@ -29,6 +29,8 @@ type ListProps = {
   whole: boolean;
   /** this person may record sessions */
   records: boolean;
+  /** said where there are none; without it the list is left out */
+  empty?: string;
   /** what is done: without weight, after everything else */
   quiet?: boolean;
 };
@@ -50,11 +52,14 @@ function keyName(row: DueRow, { records, now }: ListProps): string {
 
 /** Sessions in order of time; one press to start. */
 export function DueList(props: ListProps) {
-  if (props.rows.length === 0) return null;
+  if (props.rows.length === 0 && !props.empty) return null;
   return (
     <section>
       <h2 className="mb-2 text-section font-semibold">{props.title}</h2>
-      <ul className={clsx('rounded-key border border-rule', !props.quiet && 'bg-plate')}>
+      {props.rows.length === 0 ? <p className="text-ink2">{props.empty}</p> : null}
+      <ul
+        className={clsx('rounded-key border border-rule empty:hidden', !props.quiet && 'bg-plate')}
+      >
         {props.rows.map((row) => (
           <DueItem key={row.id} row={row} {...props} />
         ))}
