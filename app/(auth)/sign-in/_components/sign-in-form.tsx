@@ -48,7 +48,7 @@ export function SignInForm() {
   }
 
   return (
-    <form onSubmit={submit} className="flex flex-col gap-4">
+    <form method="post" onSubmit={submit} className="flex flex-col gap-4">
       <FormProblem problems={problem ? words[problem] : null} />
       <TextField id="email" label="Address" type="email" autoComplete="username" required />
       <TextField

@@ -17,7 +17,7 @@ export function PasswordForm() {
   }
   return (
     <Plate title="Password">
-      <form onSubmit={submit} className="flex flex-col gap-4">
+      <form method="post" onSubmit={submit} className="flex flex-col gap-4">
         <TextField
           id="current"
           label="The password you have now"
