@@ -1,4 +1,5 @@
 import { expect, type Locator, type Page } from '@playwright/test';
+import { DateTime } from 'luxon';
 
 /** Opens a view of the calendar by its own keys. */
 export async function openCalendar(page: Page, view: 'List' | 'Week'): Promise<void> {
@@ -22,4 +23,15 @@ export async function nextWeek(page: Page): Promise<void> {
   const before = page.url();
   await page.getByRole('navigation', { name: 'Time' }).getByRole('link', { name: 'Later' }).click();
   await expect(page).not.toHaveURL(before);
+}
+
+/** Puts the open form of a session to this many minutes later; returns the new time of the clock. */
+export async function putLater(page: Page, minutes: number): Promise<string> {
+  const day = page.getByLabel('Day', { exact: true });
+  const begins = page.getByLabel(/^Begins/);
+  const now = DateTime.fromISO(`${await day.inputValue()}T${await begins.inputValue()}`);
+  const then = now.plus({ minutes });
+  await day.fill(then.toFormat('yyyy-MM-dd'));
+  await begins.fill(then.toFormat('HH:mm'));
+  return then.toFormat('HH:mm');
 }

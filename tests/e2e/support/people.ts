@@ -1,4 +1,4 @@
-import { type Browser, expect, type Page } from '@playwright/test';
+import { type Browser, type BrowserContext, expect, type Page } from '@playwright/test';
 import { demoPassword, demoPeople } from '@/db/seed/people';
 
 export type Person = { key: string; name: string; email: string };
@@ -11,7 +11,7 @@ export function person(key: string): Person {
   return found;
 }
 
-/** The address that a relative link of the page belongs to. */
+/** The first id in an address. */
 export const idIn = (url: string): string => {
   const [id] = /[0-9a-f]{8}-[0-9a-f-]{27}/.exec(url) ?? [];
   if (!id) throw new Error(`no id in ${url}`);
@@ -26,10 +26,19 @@ export async function signIn(page: Page, who: Person): Promise<void> {
   await expect(page.getByRole('heading', { name: 'Today', level: 1 })).toBeVisible();
 }
 
-/** A page of somebody's own browser, signed in. */
+type Kept = Awaited<ReturnType<BrowserContext['storageState']>>;
+const kept = new Map<string, Kept>();
+
+/**
+ * A page of somebody's own browser, signed in. An address rests after ten sign-ins in a quarter of an
+ * hour, so a sign-in is kept and used again.
+ */
 export async function pageOf(browser: Browser, who: Person): Promise<Page> {
-  const context = await browser.newContext();
+  const context = await browser.newContext({ storageState: kept.get(who.key) });
   const page = await context.newPage();
-  await signIn(page, who);
+  if (!kept.has(who.key)) {
+    await signIn(page, who);
+    kept.set(who.key, await context.storageState());
+  }
   return page;
 }

@@ -1,0 +1,118 @@
+import AxeBuilder from '@axe-core/playwright';
+import { expect, type Page, test } from '@playwright/test';
+import { idIn, pageOf, person } from './support/people';
+
+const WCAG = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'];
+const sizes = [
+  { name: 'desk', width: 1440, height: 900 },
+  { name: 'tablet', width: 820, height: 1180 },
+];
+const schemes = ['light', 'dark'] as const;
+
+/**
+ * react-big-calendar writes its grid of roles itself: rows without cells, cells outside of rows, and
+ * scrolling boxes that take no focus. None of it can be set from outside; the list view holds all of
+ * it in our own markup, and that is checked in full.
+ */
+const CALENDAR = '.rbc-calendar';
+
+const pages: { path: string; except?: string }[] = [
+  { path: '/today' },
+  { path: '/studies' },
+  { path: '/studies/new' },
+  { path: '/calendar?view=list' },
+  { path: '/calendar?view=day', except: CALENDAR },
+  { path: '/calendar?view=week', except: CALENDAR },
+  { path: '/calendar?view=month', except: CALENDAR },
+  { path: '/models' },
+  { path: '/lab' },
+  { path: '/lab/people' },
+  { path: '/lab/rigs' },
+  { path: '/lab/hours' },
+  { path: '/lab/audit' },
+  { path: '/account' },
+  { path: '/studies/nothing-here' },
+];
+const stations = ['', 'system', 'prediction', 'series', 'sessions', 'readings', 'onset'];
+
+/** What the browser complains about while a page is open. */
+function complaints(page: Page): string[] {
+  const found: string[] = [];
+  page.on('console', (message) => {
+    // A page that is not there is answered with 404, which the browser logs as an error.
+    const missing = /status of 404/.test(message.text());
+    if (message.type() === 'error' && !missing) found.push(message.text());
+  });
+  page.on('pageerror', (error) => found.push(error.message));
+  return found;
+}
+
+/** The document never scrolls sideways; what is wide scrolls inside its own plate. */
+async function overflow(page: Page): Promise<number> {
+  return page.evaluate(() => {
+    const root = document.documentElement;
+    return root.scrollWidth - root.clientWidth;
+  });
+}
+
+/** Every rule in light; in dark only what colours can break. */
+async function violations(page: Page, scheme: 'light' | 'dark', except?: string) {
+  const axe = new AxeBuilder({ page });
+  if (except) axe.exclude(except);
+  if (scheme === 'light') axe.withTags(WCAG);
+  else axe.withRules(['color-contrast', 'link-in-text-block']);
+  const { violations: found } = await axe.analyze();
+  return found.map((v) => `${v.id}: ${v.nodes.map((n) => n.target.join(' ')).join(', ')}`);
+}
+
+async function expectGood(page: Page, path: string, except?: string): Promise<void> {
+  const found = complaints(page);
+  await page.emulateMedia({ colorScheme: 'light', reducedMotion: 'reduce' });
+  await page.goto(path, { waitUntil: 'networkidle' });
+  if (except) await page.locator(except).waitFor();
+  for (const size of sizes) {
+    await page.setViewportSize(size);
+    for (const scheme of schemes) {
+      await page.emulateMedia({ colorScheme: scheme, reducedMotion: 'reduce' });
+      const where = `${path}, ${size.name}, ${scheme}`;
+      expect.soft(await overflow(page), `sideways scroll of ${where}`).toBeLessThanOrEqual(0);
+      expect.soft(await violations(page, scheme, except), `axe on ${where}`).toEqual([]);
+    }
+  }
+  expect.soft(found, `console of ${path}`).toEqual([]);
+  page.removeAllListeners();
+}
+
+test('the sign-in page looks right', async ({ page }) => {
+  await expectGood(page, '/sign-in');
+});
+
+for (const { path, except } of pages) {
+  test(`${path} looks right`, async ({ browser }) => {
+    const page = await pageOf(browser, person('head'));
+    await expectGood(page, path, except);
+    await page.context().close();
+  });
+}
+
+for (const title of ['Repressor ring under inhibitor', 'Plankton at rising dilution']) {
+  test(`the pages of “${title}” look right`, async ({ browser }) => {
+    const page = await pageOf(browser, person('head'));
+    await page.goto('/studies');
+    const link = page.getByRole('link', { name: title }).first();
+    const study = idIn((await link.getAttribute('href')) ?? '');
+    for (const station of stations) await expectGood(page, `/studies/${study}/${station}`);
+    await page.context().close();
+  });
+}
+
+test('a session at the bench looks right', async ({ browser }) => {
+  const page = await pageOf(browser, person('technician'));
+  await page.goto('/calendar?view=list');
+  const sessions = page.getByRole('main').locator('a[href^="/sessions/"]');
+  const later = page.getByRole('navigation', { name: 'Time' }).getByRole('link', { name: 'Later' });
+  if ((await sessions.count()) === 0) await later.click();
+  const href = await sessions.first().getAttribute('href');
+  await expectGood(page, href ?? '');
+  await page.context().close();
+});
