@@ -15,7 +15,6 @@ import { playwrightCounts, Tally, vitestCounts } from './setup/tally.mjs';
  * `N passed, N failed`.
  */
 const root = dirname(dirname(fileURLToPath(import.meta.url)));
-const secondStartLimitSeconds = 10;
 const tally = new Tally();
 const folder = mkdtempSync(join(tmpdir(), 'swaypoint-check-'));
 const dataFolder = join(folder, 'data');
@@ -55,12 +54,10 @@ async function browser() {
   checkEnd('it ends cleanly', await first.stop());
 
   const second = await startInstance(root, dataFolder);
-  const quick = second.readyMs < secondStartLimitSeconds * 1000;
-  tally.check(
-    `a second start in under ${secondStartLimitSeconds} s`,
-    quick,
-    seconds(second.readyMs),
-  );
+  // A second start skips installing, building and seeding; a ratio holds on any machine.
+  const share = second.readyMs / first.readyMs;
+  const times = `${seconds(second.readyMs)} after ${seconds(first.readyMs)}`;
+  tally.check('a second start takes less than half of the first', share < 0.5, times);
   tally.check('the demo lab is still there', signIns(second) === signIns(first));
 
   const report = join(folder, 'browser.json');
