@@ -34,23 +34,30 @@ export type ReplanForm = z.output<typeof replanForm>;
 export const delimiters = [',', ';', '\t', '|'] as const;
 export const timeUnits = ['ms', 's', 'min', 'h', 'd', 'wk'] as const;
 
-const column = z.string().min(1, 'choose a column').max(200);
+const column = z.string().min(1, 'choose the column that holds the time').max(200);
 const mark = z.string().trim().min(1).max(40);
 
 /** How a table of readings is to be read, declared by whoever uploads it; nothing is guessed. */
 export const uploadMapping = z
   .strictObject({
-    delimiter: z.enum(delimiters),
-    decimalMark: z.enum(['.', ',']),
+    delimiter: z.enum(delimiters, { error: 'say what stands between the columns' }),
+    decimalMark: z.enum(['.', ','], {
+      error: 'say which decimal mark the file uses; it is never guessed',
+    }),
     timeColumn: column,
-    timeKind: z.enum(['elapsed', 'date and clock']),
+    timeKind: z.enum(['elapsed', 'date and clock'], { error: 'say what the time column holds' }),
     timeUnit: z.enum(timeUnits).optional(),
     /** IANA zone in which the instrument keeps time. */
     timeZone: z.string().min(1).max(64).optional(),
     /** Pattern such as dd.MM.yyyy HH:mm; ISO 8601 when left out. */
     dateFormat: z.string().trim().min(1).max(60).optional(),
     valueColumns: z
-      .array(z.strictObject({ column, readout: z.string().min(1, 'choose a readout').max(64) }))
+      .array(
+        z.strictObject({
+          column: z.string().max(200),
+          readout: z.string().min(1, 'choose a readout').max(64),
+        }),
+      )
       .min(1, 'choose at least one column of values')
       .max(20, 'at most 20 columns of values'),
     missingMarks: z.array(mark).max(20).default([]),

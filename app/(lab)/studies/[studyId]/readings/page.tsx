@@ -1,7 +1,7 @@
 import type { Metadata } from 'next';
 import { notFound } from 'next/navigation';
 import { Judging } from '@/components/evidence/judging';
-import { EmptyState, Finding, KeyLink } from '@/components/ui';
+import { EmptyState, KeyLink } from '@/components/ui';
 import { newestJob } from '@/db/queries/active-job';
 import { studyById } from '@/db/queries/studies';
 import { latestSystem } from '@/db/queries/systems';
@@ -136,16 +136,18 @@ function Found({ rows, simulated }: { rows: RunRow[]; simulated: boolean }) {
       : `${judged} of ${plural(rows.length, 'run')} judged${undecided.length > 0 ? `, ${undecided.length} undecided` : ''}.`;
   const settle = undecidedWords(rows);
   return (
-    <div className="mb-4">
-      <Finding title={title} next={settle.slice(0, 2).map((s) => <p key={s}>{s}</p>)}>
-        {published > 0 ? (
-          <p>{plural(published, 'verdict')} as published, without readings of this lab.</p>
-        ) : null}
-        {simulated && read > 0 ? (
-          <p>Simulated readings: made by the simulator, with noise.</p>
-        ) : null}
-      </Finding>
-    </div>
+    <section className="mb-4 max-w-[900px]">
+      <h2 className="mb-2 text-finding font-semibold">{title}</h2>
+      {published > 0 ? (
+        <p>{plural(published, 'verdict')} as published, without readings of this lab.</p>
+      ) : null}
+      {simulated && read > 0 ? <p>Simulated readings: made by the simulator, with noise.</p> : null}
+      {settle.slice(0, 3).map((words) => (
+        <p key={words} className="text-ink2">
+          {words}
+        </p>
+      ))}
+    </section>
   );
 }
 

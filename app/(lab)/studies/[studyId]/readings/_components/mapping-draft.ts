@@ -68,24 +68,12 @@ export function readDraft(draft: MappingDraft, columns: string[]) {
   });
 }
 
-/** Field of the form that a fault of the mapping belongs to, and what to say there. */
-const WORDS: Record<string, string> = {
-  delimiter: 'Say what stands between the columns.',
-  decimalMark: 'Say which decimal mark the file uses; it is never guessed.',
-  timeColumn: 'Choose the column that holds the time.',
-  timeKind: 'Say what the time column holds.',
-};
-
-/** Problems of the draft by field, the first of each. */
-export function faultsOf(
-  issues: { path: PropertyKey[]; message: string; code?: string }[],
-): Record<string, string> {
+/** Problems of the draft by field, the first of each, as sentences. */
+export function faultsOf(issues: { path: PropertyKey[]; message: string }[]) {
   const faults: Record<string, string> = {};
-  for (const issue of issues) {
-    const field = String(issue.path[0] ?? 'file');
-    const plain = issue.code === 'custom' ? undefined : WORDS[field];
-    const message = plain ?? `${issue.message[0]?.toUpperCase() ?? ''}${issue.message.slice(1)}.`;
-    faults[field] ??= message;
+  for (const { path, message } of issues) {
+    const field = String(path[0] ?? 'file');
+    faults[field] ??= `${message[0]?.toUpperCase() ?? ''}${message.slice(1)}.`;
   }
   return faults;
 }

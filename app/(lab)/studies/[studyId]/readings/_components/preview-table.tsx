@@ -20,22 +20,20 @@ export function PreviewTable({ preview, draft }: { preview: Preview; draft: Mapp
       <p className="mb-2 text-caption text-ink2">
         The first {rows.length} rows as they stand in the file.
       </p>
-      <div className="max-h-80 overflow-y-auto">
-        <DataTable
-          caption="First rows of the file"
-          columns={columns.map((column, i) => ({
-            key: column,
-            head: column || '(no name)',
-            unit: use(column, draft),
-            cell: (r: (typeof numbered)[number]) => (
-              <span className="font-mono whitespace-nowrap">{r.cells[i] ?? ''}</span>
-            ),
-          }))}
-          rows={numbered}
-          rowKey={(r) => String(r.row)}
-          empty="There are no rows beneath the names of the columns."
-        />
-      </div>
+      <DataTable
+        caption="First rows of the file"
+        columns={columns.map((column, i) => ({
+          key: column,
+          head: column || '(no name)',
+          unit: use(column, draft),
+          cell: (r: (typeof numbered)[number]) => (
+            <span className="font-mono whitespace-nowrap">{r.cells[i] ?? ''}</span>
+          ),
+        }))}
+        rows={numbered}
+        rowKey={(r) => String(r.row)}
+        empty="There are no rows beneath the names of the columns."
+      />
     </div>
   );
 }

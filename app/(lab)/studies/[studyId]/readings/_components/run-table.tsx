@@ -23,7 +23,7 @@ function columns(studyId: string, units: RunUnits): Column<RunRow>[] {
         <Link
           href={`/studies/${studyId}/readings?run=${r.id}`}
           scroll={false}
-          className="inline-flex min-h-8 items-center underline underline-offset-4"
+          className="inline-flex min-h-8 items-center whitespace-nowrap underline underline-offset-4"
         >
           Run {r.number}
         </Link>

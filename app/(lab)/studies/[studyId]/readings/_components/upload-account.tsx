@@ -6,13 +6,16 @@ import { DataTable, keyClass } from '@/components/ui';
 import type { UploadAccount } from '@/lib/contracts/forms/readings';
 import type { Sent } from './use-upload';
 
+/** Rows listed on the page; the download holds more. */
+const SHOWN = 50;
+
 const plural = (n: number, word: string) => `${n} ${word}${n === 1 ? '' : 's'}`;
 
 function ProblemRows({ problems }: { problems: UploadAccount['problems'] }) {
   if (problems.length === 0) return null;
-  const rows = problems.map((p, i) => ({ ...p, key: `${i} ${p.row} ${p.column}` }));
+  const rows = problems.slice(0, SHOWN).map((p, i) => ({ ...p, key: `${i} ${p.row} ${p.column}` }));
   return (
-    <div className="max-h-96 overflow-y-auto">
+    <div>
       <DataTable
         caption="Rows that were refused"
         columns={[
@@ -74,9 +77,9 @@ function Kept({ account, studyId }: { account: UploadAccount; studyId: string })
             >
               Download the refused rows
             </a>
-            {refused > problems.length ? (
+            {refused > SHOWN ? (
               <span className="text-ink2">
-                The first {problems.length} of {refused} are listed.
+                The first {SHOWN} of {refused} are listed here, {problems.length} in the download.
               </span>
             ) : null}
           </p>
@@ -103,7 +106,7 @@ export function UploadOutcome({ sent, studyId }: { sent: Sent; studyId: string }
           <FormProblem
             problems={{ what: sent.refusal.problem.message, how: sent.refusal.problem.mend }}
           />
-          <ProblemRows problems={sent.refusal.rows} />
+          <ProblemRows problems={sent.refusal.rows.filter((p) => p.row > 0)} />
         </>
       )}
     </div>
