@@ -43,16 +43,18 @@ export function SessionBlock({ session, zone, lines, timed }: BlockProps) {
   const held = session.state === 'suspended';
   const place = `run ${session.run}, ${session.study}`;
   const state = STATE_WORDS[session.state];
+  const words = sessionInWords(session, zone);
   const person = state ? `${session.person}, ${state}` : session.person;
   return (
     <div
+      title={words}
       className={clsx(
         'flex h-full overflow-hidden border bg-plate text-ink',
         done ? 'border-ink' : 'border-edge',
         held && 'border-dashed border-stop',
       )}
     >
-      <span className="sr-only">{sessionInWords(session, zone)}</span>
+      <span className="sr-only">{words}</span>
       <div className="w-5 shrink-0">
         <TextureStrip state={held ? 'stopped' : session.place} />
       </div>

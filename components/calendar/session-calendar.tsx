@@ -6,7 +6,7 @@ import { useMemo } from 'react';
 import { Calendar, luxonLocalizer } from 'react-big-calendar';
 import withDragAndDrop from 'react-big-calendar/lib/addons/dragAndDrop';
 import { drawnEnd, isOpen, type OpenSpan } from './open-hours';
-import { SessionBlock, sessionInWords } from './session-block';
+import { SessionBlock } from './session-block';
 import type { CalendarSession, CalendarView } from './types';
 import './calendar.css';
 
@@ -83,7 +83,7 @@ export function SessionCalendar(props: Props) {
       popup
       resizable={false}
       draggableAccessor={(event) => event.session.movable}
-      tooltipAccessor={(event) => sessionInWords(event.session, zone)}
+      tooltipAccessor={() => ''}
       scrollToTime={morning}
       formats={{
         timeGutterFormat: 'HH:mm',
