@@ -3,10 +3,20 @@ import type { Transaction } from '@/db/client';
 import { booking, preparation, run, session, sessionVisit, visit } from '@/db/schema';
 import type { Placement } from '@/lib/contracts';
 import { queueReminders } from '../outbox/enqueue';
-import type { LayOutPlan, RunPlan } from './plan';
+import type { LayOutPlan, PlannedVisit, RunPlan } from './plan';
 
 type Where = { labId: string; firstNumber: number; now: Date };
 const plus = (at: Date, minutes: number) => new Date(at.getTime() + minutes * 60_000);
+
+/** Where one stay is the whole run, the run ends with the readings, not with the setting of its dose. */
+const endOfStay = (stay: PlannedVisit): PlannedVisit => ({
+  kind: 'collect',
+  label: 'Readings taken',
+  atMinutes: stay.atMinutes + stay.minutes,
+  minutes: 0,
+  earlyMinutes: 0,
+  lateMinutes: stay.minutes,
+});
 
 async function insertRun(
   tx: Transaction,
@@ -43,45 +53,63 @@ async function insertRun(
     from: start,
     to: new Date(placement.end),
   });
-  for (const [i, v] of planned.run.visits.entries()) {
-    const attendance = placement.attendance[i];
-    if (!attendance) continue;
+  for (const i of planned.run.visits.keys()) {
+    await insertSession(tx, where, plan, { ...planned, runId, bookingId, visit: i });
+  }
+}
+
+/** One attendance of a placed run: its session, its visits and its reminders. */
+async function insertSession(
+  tx: Transaction,
+  where: Where,
+  plan: LayOutPlan,
+  of: { run: RunPlan; placement: Placement; runId: string; bookingId: string; visit: number },
+): Promise<void> {
+  const { placement, runId, bookingId } = of;
+  const { labId } = where;
+  const { visits } = of.run;
+  const attendance = placement.attendance[of.visit];
+  const v = visits[of.visit];
+  if (!attendance || !v) return;
+  const start = new Date(placement.start);
+  const sessionId = uuid();
+  const startsAt = new Date(attendance.from);
+  await tx.insert(session).values({
+    id: sessionId,
+    labId,
+    studyId: plan.studyId,
+    bookingId,
+    rigId: placement.rig,
+    personId: attendance.person,
+    startsAt,
+    endsAt: new Date(attendance.to),
+    createdAt: where.now,
+  });
+  const moments = visits.length === 1 ? [v, endOfStay(v)] : [v];
+  for (const m of moments) {
     const visitId = uuid();
-    const sessionId = uuid();
-    const startsAt = new Date(attendance.from);
     await tx.insert(visit).values({
       id: visitId,
       labId,
       runId,
-      kind: v.kind,
-      label: v.label,
-      atMinutes: v.atMinutes,
-      minutes: v.minutes,
-      earliest: plus(start, Math.max(0, v.atMinutes - v.earlyMinutes)),
-      latest: plus(start, v.atMinutes + v.lateMinutes),
-    });
-    await tx.insert(session).values({
-      id: sessionId,
-      labId,
-      studyId: plan.studyId,
-      bookingId,
-      rigId: placement.rig,
-      personId: attendance.person,
-      startsAt,
-      endsAt: new Date(attendance.to),
-      createdAt: where.now,
+      kind: m.kind,
+      label: m.label,
+      atMinutes: m.atMinutes,
+      minutes: m.minutes,
+      earliest: plus(start, Math.max(0, m.atMinutes - m.earlyMinutes)),
+      latest: plus(start, m.atMinutes + m.lateMinutes),
     });
     await tx.insert(sessionVisit).values({ id: uuid(), labId, sessionId, visitId });
-    await queueReminders(tx, {
-      labId,
-      studyId: plan.studyId,
-      sessionId,
-      personId: attendance.person,
-      startsAt,
-      sequence: 0,
-      now: where.now,
-    });
   }
+  await queueReminders(tx, {
+    labId,
+    studyId: plan.studyId,
+    sessionId,
+    personId: attendance.person,
+    startsAt,
+    sequence: 0,
+    now: where.now,
+  });
 }
 
 /** Makes runs, bookings, visits, sessions and reminders of what was placed. */

@@ -34,6 +34,11 @@ async function chainGaps(conn: Conn, labId: string, held: Held): Promise<MoveLab
   });
 }
 
+type Moment = { atMinutes: number };
+/** How long after a session's first visit another of its visits comes, ms. */
+const after = (all: Moment[], one: Moment) =>
+  (one.atMinutes - Math.min(...all.map((v) => v.atMinutes))) * 60_000;
+
 /** The lab's calendar around some moments, as the engine asks for it when something moves. */
 export async function moveLab(
   conn: Conn,
@@ -75,8 +80,12 @@ export async function moveLab(
         skills: rig?.skills ?? [],
         ...(own.length > 0
           ? {
-              earliest: new Date(Math.max(...own.map((v) => v.earliest.getTime()))).toISOString(),
-              latest: new Date(Math.min(...own.map((v) => v.latest.getTime()))).toISOString(),
+              earliest: new Date(
+                Math.max(...own.map((v) => v.earliest.getTime() - after(own, v))),
+              ).toISOString(),
+              latest: new Date(
+                Math.min(...own.map((v) => v.latest.getTime() - after(own, v))),
+              ).toISOString(),
             }
           : {}),
       };
