@@ -5,7 +5,7 @@ import { DateTime } from 'luxon';
 import dynamic from 'next/dynamic';
 import Link from 'next/link';
 import { useRouter } from 'next/navigation';
-import { useCallback, useState } from 'react';
+import { useCallback, useMemo, useState } from 'react';
 import type { OpenSpan } from '@/components/calendar/open-hours';
 import { SessionList } from '@/components/calendar/session-list';
 import type { CalendarPerson, CalendarSession } from '@/components/calendar/types';
@@ -69,9 +69,11 @@ export function CalendarRoom(props: Props) {
     },
     [router],
   );
+  const [asked, setAsked] = useState(0);
   const { run, problem, pending } = useAction(moveSessionAction, { onDone });
   const move = (session: CalendarSession, startsAt: string, personId?: string) => {
     setSaid('');
+    setAsked(session.run);
     void run({
       sessionId: session.id,
       revision: session.revision,
@@ -79,13 +81,17 @@ export function CalendarRoom(props: Props) {
       ...(personId && personId !== session.personId ? { personId } : {}),
     });
   };
+  const refusal = useMemo(
+    () => problem && { ...problem, message: `Run ${asked} stays where it was. ${problem.message}` },
+    [problem, asked],
+  );
   return (
     <div className="mt-4 flex flex-col gap-4">
       <Steps {...props} />
       <div aria-live="polite" className="empty:hidden">
         {pending ? 'Asking whether it can be moved …' : said}
       </div>
-      <ActionProblem problem={problem} />
+      <ActionProblem problem={refusal} />
       {sessions.length === 0 && view === 'list' ? (
         <EmptyState
           title="No sessions in this week"
