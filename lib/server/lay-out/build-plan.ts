@@ -67,8 +67,15 @@ async function staffing(conn: Conn, ask: Ask): Promise<Pick<LayOutRequest, 'peop
   };
 }
 
-/** What rigs and people have on already; this study's own unstarted runs are laid anew and do not count. */
-async function busyTimes(conn: Conn, ask: Ask): Promise<LayOutRequest['busy']> {
+/**
+ * What the rig and the people that are asked for have on already; the engine knows no others. This
+ * study's own unstarted runs are laid anew and do not count.
+ */
+async function busyTimes(
+  conn: Conn,
+  ask: Ask,
+  wanted: { rigId: string; people: { id: string }[] },
+): Promise<LayOutRequest['busy']> {
   const labId = ask.member.labId;
   const [held, sessions] = await Promise.all([
     heldBookings(conn, { labId, from: ask.notBefore }),
@@ -84,9 +91,10 @@ async function busyTimes(conn: Conn, ask: Ask): Promise<LayOutRequest['busy']> {
   );
   return [
     ...held
-      .filter((b) => !replaced.has(b.id))
+      .filter((b) => b.rigId === wanted.rigId && !replaced.has(b.id))
       .map((b) => ({ rig: b.rigId, from: b.from.toISOString(), to: b.to.toISOString() })),
     ...sessions
+      .filter((s) => wanted.people.some((p) => p.id === s.personId))
       .filter((s) => !replaced.has(s.bookingId) && ['planned', 'started'].includes(s.state))
       .map((s) => ({
         person: s.personId,
@@ -175,7 +183,7 @@ export async function buildLayOutPlan(conn: Conn, ask: Ask): Promise<LayOutPlan>
         },
       ],
       ...staff,
-      busy: await busyTimes(conn, ask),
+      busy: await busyTimes(conn, ask, { rigId: studyRig.id, people: staff.people }),
       seed: 1,
       effort: 400,
     },
