@@ -75,7 +75,9 @@ export async function askApproval(page: Page): Promise<void> {
 /** The head finds the request under Today and approves it. */
 export async function approve(page: Page, title: string): Promise<void> {
   await page.goto('/today');
-  const waits = page.getByRole('region', { name: 'Waits for you' });
+  const waits = page.locator('section', {
+    has: page.getByRole('heading', { name: 'Waits for you' }),
+  });
   await waits.getByRole('link').filter({ hasText: title }).click();
   await page.getByLabel('Words to the author').fill('Go ahead; look again at the far side.');
   await page.getByRole('button', { name: /^Approve version/ }).click();
