@@ -66,7 +66,7 @@ export function SessionBlock({ session, zone, lines, timed }: BlockProps) {
           <span className={clsx('shrink-0', done ? 'font-bold' : 'font-semibold')}>
             {session.dose}
           </span>
-          {lines === 1 ? <span className="truncate">{`, ${place}`}</span> : null}
+          {lines === 1 ? <span className="truncate">{`, ${place}, ${person}`}</span> : null}
         </span>
         {lines > 1 ? <span className="block truncate">{place}</span> : null}
         {lines > 2 ? <span className="block truncate text-ink2">{person}</span> : null}

@@ -79,7 +79,7 @@ function Line(props: {
           className="block truncate underline underline-offset-4"
           title={`${s.study}, run ${s.run}: ${s.what}`}
         >
-          {`run ${s.run}, ${s.study}: ${s.what}`}
+          {`Run ${s.run}, ${s.study}: ${s.what}`}
         </Link>
         <span className="block truncate text-caption text-ink2">
           {s.rig}, {s.person}

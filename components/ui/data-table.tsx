@@ -90,7 +90,7 @@ function Head<Row>({ column }: { column: Column<Row> }) {
 function Cell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
   const className = clsx(
     EDGE,
-    'h-[38px] text-left font-normal',
+    'h-[38px] py-2 text-left font-normal',
     column.kind === 'figure' && 'whitespace-nowrap font-mono',
     column.kind === 'figure' && !column.strong && 'text-right',
     column.strong && 'font-semibold',

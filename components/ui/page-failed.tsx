@@ -18,20 +18,23 @@ export function PageFailed({ error, retry }: PageErrorProps) {
   useEffect(() => console.error(error), [error]);
   const reference = referenceOf(error);
   return (
-    <FailedState
-      title="This page could not be shown"
-      safe="Everything that was saved is safe, and nothing was changed by this."
-      action={
-        <Key kind="filled" onClick={() => retry()}>
-          Try again
-        </Key>
-      }
-    >
-      <p>
-        {reference
-          ? `Something failed on the server. If it fails again, tell whoever looks after the server this reference: ${reference}.`
-          : 'Something failed while it was drawn. If it fails again, load the page anew.'}
-      </p>
-    </FailedState>
+    <>
+      <h1 className="sr-only">Failed</h1>
+      <FailedState
+        title="This page could not be shown"
+        safe="Everything that was saved is safe, and nothing was changed by this."
+        action={
+          <Key kind="filled" onClick={() => retry()}>
+            Try again
+          </Key>
+        }
+      >
+        <p>
+          {reference
+            ? `Something failed on the server. If it fails again, tell whoever looks after the server this reference: ${reference}.`
+            : 'Something failed while it was drawn. If it fails again, load the page anew.'}
+        </p>
+      </FailedState>
+    </>
   );
 }

@@ -115,7 +115,7 @@ function What({ row, zone, whole, quiet }: ListProps & { row: DueRow }) {
         <span className={weight}>{row.what}</span>
       </p>
       <p className="truncate text-caption text-ink2" title={row.study}>
-        {`run ${row.run}, ${row.rig}${whole ? `, ${row.person}` : ''}; ${row.study}`}
+        {`Run ${row.run}, ${row.rig}${whole ? `, ${row.person}` : ''}; ${row.study}`}
       </p>
       <p className="text-caption text-ink2">{facts.join('; ')}</p>
     </div>

@@ -34,6 +34,9 @@ export function AbsenceEditor({ zone, people, absences }: Props) {
   }
   return (
     <Plate title="Absences and closures">
+      {absences.length === 0 ? (
+        <p className="text-ink2">Nobody is away and nothing is closed.</p>
+      ) : null}
       <ul>
         {absences.map((a) => (
           <li key={a.id} className="flex flex-wrap items-center gap-4 py-1">

@@ -40,7 +40,7 @@ export function HoursEditor({ owner }: { owner: Owner }) {
       <ul>
         {owner.hours.map((h) => (
           <li key={h.id} className="flex flex-wrap items-center gap-4 py-1">
-            <span>{h.words}</span>
+            <span className="inline-block first-letter:uppercase">{h.words}</span>
             <Key
               pending={remove.pending}
               onClick={() => void remove.run({ id: h.id })}

@@ -104,7 +104,9 @@ export default async function SessionsPage({ params }: { params: Promise<{ study
           }
         >
           {approved
-            ? 'Lay out the approved series: each run gets its rig, its people and its times.'
+            ? lays
+              ? 'Lay out the approved series: each run gets its rig, its people and its times.'
+              : 'An investigator or the head lays out the approved series.'
             : 'Sessions follow once the head has approved a version of the series.'}
         </EmptyState>
       )}

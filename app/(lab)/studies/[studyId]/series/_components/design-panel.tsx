@@ -33,7 +33,7 @@ type Props = {
 };
 
 const SCHEMES = [
-  { value: 'climb', label: 'Climb: one preparation takes level after level' },
+  { value: 'climb', label: 'Climb: one preparation, level after level' },
   { value: 'fresh', label: 'Fresh: a new preparation for each level' },
   { value: 'parallel', label: 'Parallel: all levels at once' },
 ];

@@ -4,13 +4,15 @@ import { durationText, figure, unitText } from '@/lib/format';
 
 export type Units = { dose: string; doseLabel: string; control: string; controlLabel: string };
 
+const sentence = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);
+
 /** The levels in order of work: dose in bench units, control value beside it, times. */
 export function LevelTable({ levels, units }: { levels: Level[]; units: Units }) {
   const columns: Column<Level>[] = [
     { key: 'position', head: 'Order', kind: 'figure', cell: (l) => l.position },
     {
       key: 'dose',
-      head: units.doseLabel,
+      head: sentence(units.doseLabel),
       unit: unitText(units.dose),
       kind: 'figure',
       strong: true,
@@ -18,7 +20,7 @@ export function LevelTable({ levels, units }: { levels: Level[]; units: Units })
     },
     {
       key: 'control',
-      head: units.controlLabel,
+      head: sentence(units.controlLabel),
       unit: unitText(units.control),
       kind: 'figure',
       cell: (l) => figure(l.control, 3),
@@ -48,7 +50,7 @@ export function LevelTable({ levels, units }: { levels: Level[]; units: Units })
       kind: 'figure',
       cell: (l) => durationText(l.intervalMinutes),
     },
-    { key: 'notes', head: 'What bites', cell: (l) => l.notes.join(' ') },
+    { key: 'notes', head: 'Notes', cell: (l) => l.notes.join(' ') },
   ];
   return (
     <DataTable

@@ -1,7 +1,7 @@
 import type { ReactNode } from 'react';
 import { Finding } from '@/components/ui';
 import type { Level, seriesVersions } from '@/db/queries/series';
-import { durationText, figure, unitText } from '@/lib/format';
+import { durationText, figure, withUnit } from '@/lib/format';
 import type { Units } from './level-table';
 
 type Version = Awaited<ReturnType<typeof seriesVersions>>[number];
@@ -24,12 +24,12 @@ function Gain({ version, units }: { version: Version; units: Units }) {
     <>
       {version.designs.map(({ answer }) => {
         const { sd, low, high, equalSpacingSd } = answer.expected;
-        const dose = unitText(units.dose);
+        const dose = (value: number, digits: number) => withUnit(figure(value, digits), units.dose);
         return (
           <p key={`${low} ${high}`} className="mb-2">
-            Expected after it: the onset known to ±{figure(1.645 * sd, 2)} {dose} (90 %), around{' '}
-            {figure((low + high) / 2, 3)} {dose}. Equal spacing would give ±
-            {figure(1.645 * equalSpacingSd, 2)} {dose}.
+            Expected after it: the onset known to ±{dose(1.645 * sd, 2)} (90&nbsp;%), around{' '}
+            {dose((low + high) / 2, 3)}. Equal spacing would give ±{dose(1.645 * equalSpacingSd, 2)}
+            .
           </p>
         );
       })}
@@ -70,7 +70,7 @@ export function SeriesFinding(props: {
     >
       <p className="mb-2">
         {climb
-          ? `Each preparation climbs through all levels, ${version.order}: ${durationText(hours(levels, true))} of settling and recording a preparation.`
+          ? `Each preparation climbs through all levels, ${version.order}: each takes ${durationText(hours(levels, true))} of settling and recording.`
           : `A fresh preparation for each level, ${version.order}: the longest run takes ${durationText(hours(levels, false))}.`}
       </p>
       <Gain version={version} units={units} />
