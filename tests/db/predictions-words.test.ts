@@ -161,7 +161,26 @@ describe('what the ribbon shows', () => {
       readouts: { x: { min: 1, max: 4 } },
     });
     const swings = amplitudesOf([cycle(0.4, true), cycle(0.3, false)], 'x', [onset]);
-    expect(swings).toEqual({ control: [0.151, 0.4], value: [0, 1.5] });
+    expect(swings?.control.at(0)).toBe(0.151);
+    expect(swings?.value.at(0)).toBe(0);
+    expect(swings?.control.at(-1)).toBe(0.4);
+    expect(swings?.value.at(-1)).toBe(1.5);
     expect(amplitudesOf([cycle(0.3, false)], 'x', [onset])).toBeNull();
+  });
+
+  test('goes like the square root of the distance between a gentle onset and the nearest cycle', () => {
+    const cycle = { control: 0.051, period: 1, stable: true, readouts: { x: { min: 0, max: 4 } } };
+    for (const oscillates of ['above', 'below'] as const) {
+      const at = oscillates === 'above' ? cycle : { ...cycle, control: 0.251 };
+      const gentle = { ...onset, value: oscillates === 'above' ? 0.011 : 0.291, oscillates };
+      const swings = amplitudesOf([at], 'x', [gentle]);
+      expect(swings?.control.length).toBeGreaterThan(3);
+      swings?.control.forEach((c, i) => {
+        const share = Math.abs(c - gentle.value) / 0.04;
+        expect(swings.value[i]).toBeCloseTo(2 * Math.sqrt(share), 10);
+      });
+    }
+    const abrupt = { ...onset, coexistence: { from: 0.1, to: 0.151 } };
+    expect(amplitudesOf([{ ...cycle, control: 0.2 }], 'x', [abrupt])?.control).toEqual([0.2]);
   });
 });

@@ -139,6 +139,28 @@ describe('cycles along the branch', () => {
     expect(controls.filter((c) => c < 0.5).length).toBeGreaterThan(cycles.length / 3);
   });
 
+  it('are put in between where the amplitude rises steeply, and lie on the exact curve', () => {
+    // The radius is the square root of g(mu), which climbs from 1 to 6 within 0.1 around mu = 1.
+    const g = '(mu + 5/(1 + exp(60*(1 - mu))))';
+    const steep = model(
+      { x: `${g}*x - w*y - x*(x^2 + y^2)`, y: `w*x + ${g}*y - y*(x^2 + y^2)` },
+      [0.1, 0],
+      { mu: 1, w: 2 },
+    );
+    const system = compileModel(steep);
+    const { cycles } = cyclesAlongBranch(system, system.values, 0, {
+      branch: restBranch(-1, 2, 0, 2),
+      onsets: [{ value: 0, period: Math.PI, oscillates: 'above' }],
+    });
+    const radii = cycles.map((c) => c.readouts.x!.max);
+    cycles.forEach(({ control }, i) => {
+      const exact = Math.sqrt(control + 5 / (1 + Math.exp(60 * (1 - control))));
+      expect(Math.abs(radii[i]! / exact - 1)).toBeLessThan(0.01);
+    });
+    const steps = radii.slice(1).map((r, i) => Math.abs(r - radii[i]!));
+    expect(Math.max(...steps) / Math.max(...radii)).toBeLessThan(0.2);
+  });
+
   it('are none without an onset, and what fails is reported with its control value', () => {
     const system = compileModel(circle);
     const branch = restBranch(-2, -1, 0, 2);

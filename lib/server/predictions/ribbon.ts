@@ -6,7 +6,11 @@ import { doseToControl } from '@/lib/sim/dose-map';
 /** Control values and half swings of one readout, ascending; 0 at gentle onsets. */
 export type Amplitudes = { control: number[]; value: number[] };
 
-type OnsetPlace = { value: number; coexistence: { from: number; to: number } | null };
+type OnsetPlace = {
+  value: number;
+  oscillates: 'above' | 'below';
+  coexistence: { from: number; to: number } | null;
+};
 
 /** The readout whose swing stands for the oscillation: the first one. */
 export const firstReadout = (model: SystemModel): { symbol: string; unit: string | null } => {
@@ -14,7 +18,13 @@ export const firstReadout = (model: SystemModel): { symbol: string; unit: string
   return { symbol: first?.symbol ?? '', unit: first?.unit ?? null };
 };
 
-/** Half the swing of `readout` over each stable cycle; null where no stable cycle was found. */
+/** Places on the way from a gentle onset to its nearest cycle, as shares of that cycle's amplitude. */
+const SQUARE_ROOT_SHARES = [0.25, 0.5, 0.75];
+
+/**
+ * Half the swing of `readout` over each stable cycle; null where no stable cycle was found. Between a
+ * gentle onset and its nearest cycle the amplitude goes like the square root of the distance.
+ */
 export function amplitudesOf(
   cycles: readonly Cycle[],
   readout: string,
@@ -25,11 +35,29 @@ export function amplitudesOf(
     return stable && swing ? [{ control, value: (swing.max - swing.min) / 2 }] : [];
   });
   if (points.length === 0) return null;
-  for (const onset of onsets) {
-    if (!onset.coexistence) points.push({ control: onset.value, value: 0 });
-  }
+  const gentle = onsets.filter((onset) => !onset.coexistence);
+  const begin = gentle.flatMap((onset) => beginning(onset, points));
+  points.push(...begin);
   points.sort((a, b) => a.control - b.control);
   return { control: points.map((p) => p.control), value: points.map((p) => p.value) };
+}
+
+type Point = { control: number; value: number };
+
+/** Zero at a gentle onset, and the square root from there to the nearest cycle on its oscillating side. */
+function beginning({ value: from, oscillates }: OnsetPlace, points: readonly Point[]): Point[] {
+  const sign = oscillates === 'above' ? 1 : -1;
+  const distance = (p: Point) => sign * (p.control - from);
+  const nearest = points
+    .filter((p) => distance(p) > 0)
+    .reduce<Point | null>((a, b) => (a && distance(a) <= distance(b) ? a : b), null);
+  const zero = { control: from, value: 0 };
+  if (!nearest) return [zero];
+  const curve = SQUARE_ROOT_SHARES.map((share) => ({
+    control: from + (nearest.control - from) * share ** 2,
+    value: nearest.value * share,
+  }));
+  return [zero, ...curve];
 }
 
 /** The ceiling dose as a control value and the side on which doses are forbidden. */

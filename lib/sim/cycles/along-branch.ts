@@ -22,11 +22,16 @@ const COUNT = 24;
 const WORK = 3_000_000;
 const KICK = 0.2;
 const MOST_FAILURES = 3;
+/** A swing that changes by more than this share of the largest one gets a cycle in between. */
+const LARGEST_JUMP = 0.1;
+/** Cycles put in between, at most, in one range. */
+const MOST_BETWEEN = 10;
 
 /**
  * Stable cycles over the ranges in which the steady state is unstable, about 24 in all, closer together near an onset
  * (amplitudes grow like a square root there). Each range is walked from where cycles settle fast towards
- * both ends; every course goes on from the cycle before.
+ * both ends; every course goes on from the cycle before. Where a swing changes by more than a tenth of the
+ * largest from one cycle to the next, cycles are put in between, at most 10 in a range.
  * `p0` holds the parameters; its control entry is not read.
  */
 export function cyclesAlongBranch(
@@ -46,6 +51,7 @@ export function cyclesAlongBranch(
     const first = walk.visit(controls[middle]!, null);
     walk.along(controls.slice(middle + 1), first);
     walk.along(controls.slice(0, middle).reverse(), first);
+    walk.fillJumps();
   }
   cycles.sort((a, b) => a.control - b.control);
   omitted.sort((a, b) => a.control - b.control);
@@ -61,6 +67,8 @@ function startShare(span: OscillatingSpan): number {
 type Visit = { history: History; period: number } | null;
 
 class Walk {
+  private readonly found: { cycle: Cycle; visit: Visit }[] = [];
+
   constructor(
     private readonly system: CompiledSystem,
     private readonly p0: Float64Array,
@@ -86,6 +94,18 @@ class Walk {
     }
   }
 
+  /** Halves the largest jump of swing again and again; a half that cannot be had ends it. */
+  fillJumps(): void {
+    for (let between = 0; between < MOST_BETWEEN; between += 1) {
+      const found = this.found.sort((a, b) => a.cycle.control - b.cycle.control);
+      const at = largestJump(found.map((f) => f.cycle));
+      if (at < 0) return;
+      const [before, after] = [found[at - 1]!, found[at]!];
+      const middle = (before.cycle.control + after.cycle.control) / 2;
+      if (!this.visit(middle, before.visit)) return;
+    }
+  }
+
   visit(control: number, before: Visit): Visit {
     const p = Float64Array.from(this.p0);
     p[this.controlIndex] = control;
@@ -97,13 +117,30 @@ class Walk {
       settled = settledCycle(this.system, p, start, period, this.budget);
     }
     if (settled.outcome === 'cycle') {
-      this.cycles.push(asCycle(this.system, control, settled));
-      return { history: settled.history, period: settled.period };
+      const cycle = asCycle(this.system, control, settled);
+      const visit = { history: settled.history, period: settled.period };
+      this.cycles.push(cycle);
+      this.found.push({ cycle, visit });
+      return visit;
     }
     const why = settled.outcome === 'steady' ? 'the course settles to a steady state' : settled.why;
     this.omitted.push({ control, why });
     return null;
   }
+}
+
+/** Index of the cycle that differs most in swing from the one before it; -1 when all are alike enough. */
+function largestJump(cycles: readonly Cycle[]): number {
+  let [at, jump] = [-1, LARGEST_JUMP];
+  for (const symbol of Object.keys(cycles[0]?.readouts ?? {})) {
+    const swings = cycles.map(({ readouts }) => readouts[symbol]!.max - readouts[symbol]!.min);
+    const largest = swings.reduce((a, b) => Math.max(a, b), 0);
+    for (let i = 1; i < swings.length; i += 1) {
+      const change = Math.abs(swings[i]! - swings[i - 1]!) / largest;
+      if (change > jump) [at, jump] = [i, change];
+    }
+  }
+  return at;
 }
 
 /** A cycle in the engine's answer. */
