@@ -8,10 +8,18 @@ import { storeOf } from './stores';
 const BEAT_MS = 700;
 const LONGEST_MS = 15 * 60_000;
 
+/** What people are told; the detail, with its paths, goes to the log alone. */
+const WORDS = {
+  long: 'The calculation took longer than 15 minutes and was ended. Ask for less at once, such as fewer draws or levels.',
+  broken:
+    'The calculation broke off without an answer. Your inputs are kept; ask again, and tell the lab head if it happens twice.',
+  unstored: 'The result could not be stored. Your inputs are kept; ask again.',
+};
+
 type Message =
   | { kind: 'progress'; done: number; total: number; stage: string }
   | { kind: 'answer'; answer: unknown }
-  | { kind: 'error'; message: string };
+  | { kind: 'error'; message: string; detail: string | null };
 
 type Outcome =
   | { outcome: 'answered'; answer: unknown }
@@ -34,7 +42,7 @@ function workInThread(db: Db, job: Job, owner: string, threadFile: string): Prom
     };
     const beat = async () => {
       if (Date.now() - began > LONGEST_MS) {
-        end({ outcome: 'failed', message: 'The calculation took longer than 15 minutes.' });
+        end({ outcome: 'failed', message: WORDS.long });
         return;
       }
       const held = await heartbeat(db, { id: job.id, owner, now: new Date(), ...state }).catch(
@@ -46,18 +54,17 @@ function workInThread(db: Db, job: Job, owner: string, threadFile: string): Prom
     thread.on('message', (message: Message) => {
       if (message.kind === 'progress') Object.assign(state, message);
       else if (message.kind === 'answer') end({ outcome: 'answered', answer: message.answer });
-      else end({ outcome: 'failed', message: message.message });
+      else {
+        if (message.detail)
+          log.error({ detail: message.detail, kind: job.kind }, 'a calculation failed inside');
+        end({ outcome: 'failed', message: message.message });
+      }
     });
     thread.on('error', (error) => {
       log.error({ err: error, kind: job.kind }, 'the thread of a calculation broke off');
-      end({
-        outcome: 'failed',
-        message: 'The calculation broke off. Your inputs are kept; ask again, then the lab head.',
-      });
+      end({ outcome: 'failed', message: WORDS.broken });
     });
-    thread.on('exit', () =>
-      end({ outcome: 'failed', message: 'The calculation ended without an answer.' }),
-    );
+    thread.on('exit', () => end({ outcome: 'failed', message: WORDS.broken }));
   });
 }
 
@@ -79,7 +86,7 @@ export async function runJob(db: Db, job: Job, owner: string, threadFile: string
   } catch (error) {
     const refused = error instanceof JobRefused;
     if (!refused) log.error({ err: error, kind: job.kind }, 'storing a result failed');
-    const message = refused ? error.message : 'The result could not be stored. Ask again.';
+    const message = refused ? error.message : WORDS.unstored;
     await fail(db, { id: job.id, owner, now: new Date(), error: message });
   }
 }

@@ -14,7 +14,11 @@ try {
   const where = known && error.at ? ` (at ${error.at})` : '';
   const message = known
     ? `${error.message}${where}`
-    : 'The calculation failed inside. Your inputs are kept; tell the lab head.';
-  if (!known) console.error(error);
-  parentPort?.postMessage({ kind: 'error', message });
+    : 'The calculation failed for a reason inside the program. Your inputs are kept; tell the lab head.';
+  const detail = known
+    ? null
+    : error instanceof Error
+      ? (error.stack ?? error.message)
+      : `${error}`;
+  parentPort?.postMessage({ kind: 'error', message, detail });
 }
