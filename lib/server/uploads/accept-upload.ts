@@ -12,6 +12,7 @@ import { AppError, notFound } from '../errors';
 import { askEvidence } from '../evidence/ask-evidence';
 import { readoutsOf } from '../evidence/readouts';
 import { holdFile } from '../files';
+import { retryDeadlock } from '../retry-deadlock';
 import { type ImportedFile, importFile } from './import-file';
 import { insertReadings } from './insert-readings';
 
@@ -187,11 +188,13 @@ export async function acceptUpload(context: Context, input: UploadInput): Promis
   });
   const file = await holdFile({ labId: member.labId, sha256 }, input.bytes);
   try {
-    const stored = await db.transaction(async (tx) => {
-      const done = await store(tx, context, input, { target, imported, sha256 });
-      await file.keep();
-      return done;
-    });
+    const stored = await retryDeadlock(() =>
+      db.transaction(async (tx) => {
+        const done = await store(tx, context, input, { target, imported, sha256 });
+        await file.keep();
+        return done;
+      }),
+    );
     return { ...stored, remarks: imported.remarks };
   } catch (error) {
     await file.drop();

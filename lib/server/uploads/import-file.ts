@@ -39,7 +39,7 @@ export class UploadRefused extends AppError {
 /** Cells read at one go: the server answers others in between, and no part has more problems than are listed. */
 const PART_CELLS = 900;
 const MOST_RECORDS = 500_000;
-const MOST_READINGS = 1_000_000;
+const MOST_READINGS = 500_000;
 const MOST_LISTED = 500;
 const LONGEST_MINUTES = 100 * 365.25 * 1440;
 
