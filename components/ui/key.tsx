@@ -1,6 +1,7 @@
 import clsx from 'clsx';
 import Link from 'next/link';
 import type { ButtonHTMLAttributes, ReactNode } from 'react';
+import { SubmitButton } from './submit-button';
 
 export type KeyKind = 'filled' | 'outlined' | 'stop';
 
@@ -15,7 +16,7 @@ const LOOK: Record<KeyKind, string> = {
 export function keyClass(kind: KeyKind = 'outlined', className?: string): string {
   return clsx(
     'press inline-flex min-h-10 items-center justify-center gap-2 rounded-key border px-4 py-2 text-body leading-5 font-semibold pointer-coarse:min-h-12 print:hidden',
-    'disabled:cursor-not-allowed disabled:border-dashed disabled:border-edge disabled:bg-transparent disabled:text-ink2',
+    'disabled:not-data-waiting:cursor-not-allowed disabled:not-data-waiting:border-dashed disabled:not-data-waiting:border-edge disabled:not-data-waiting:bg-transparent disabled:not-data-waiting:text-ink2',
     LOOK[kind],
     className,
   );
@@ -29,15 +30,14 @@ type KeyProps = ButtonHTMLAttributes<HTMLButtonElement> & {
 
 /** A key: filled for the one act of a page, outlined for the others, stop for stops alone. */
 export function Key({ kind, pending, className, disabled, type, ...rest }: KeyProps) {
-  return (
-    <button
-      {...rest}
-      type={type ?? 'button'}
-      disabled={disabled || pending}
-      aria-busy={pending || undefined}
-      className={keyClass(kind, className)}
-    />
-  );
+  const shared = {
+    ...rest,
+    disabled: disabled || pending,
+    'aria-busy': pending || undefined,
+    className: keyClass(kind, className),
+  };
+  if (type === 'submit') return <SubmitButton {...shared} />;
+  return <button {...shared} type={type ?? 'button'} />;
 }
 
 /** A key that leads somewhere. */
