@@ -1,8 +1,12 @@
 import { niceStep, tickText } from '@/components/ribbon/scale';
-import { decimalsOfStep } from '@/lib/format';
+import { decimalsOfStep, unitText } from '@/lib/format';
 
 export type AxisTick = { value: number; text: string };
 export type Axis = { domain: [number, number]; ticks: AxisTick[] };
+
+/** "dilution rate, /d"; the name alone where the parameter has no unit. */
+export const axisName = (label: string, unit: string): string =>
+  [label, unitText(unit)].filter(Boolean).join(', ');
 
 /** Axis from zero: about four steps of 1, 2 or 5 that reach the largest value, with room above. */
 export function axisFromZero(largest: number, steps = 4): Axis {

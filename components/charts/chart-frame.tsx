@@ -113,7 +113,7 @@ type NumeralProps = { ticks: AxisTick[]; unit: string; places: Places; floor: nu
 
 function Numerals({ ticks, unit, places, floor }: NumeralProps) {
   return (
-    <g fontSize={11} fill="var(--ink2)" stroke="var(--plate)" strokeWidth={2} paintOrder="stroke">
+    <g fontSize={11} fill="var(--ink2)" stroke="var(--plate)" strokeWidth={4} paintOrder="stroke">
       {ticks
         .filter((t) => t.value > floor && places.y(t.value) > 14)
         .map((t, i, all) => (

@@ -2,7 +2,7 @@
 
 import { ticksOf } from '@/components/ribbon/scale';
 import { figure, unitText } from '@/lib/format';
-import { axisOver } from './axis';
+import { axisName, axisOver } from './axis';
 import { ChartFrame, FOOT, PAD } from './chart-frame';
 import {
   Name,
@@ -45,7 +45,7 @@ export function GrowthChart(props: GrowthChartProps) {
       alt={sentence(props)}
       xDomain={[from, to]}
       xTicks={(width) => ticksOf(from, to, width, PAD)}
-      xName={`${props.label}, ${unitText(props.unit)}`}
+      xName={axisName(props.label, props.unit)}
       y={y}
       yUnit={`/${unitText(props.timeUnit)}`}
       height={height}

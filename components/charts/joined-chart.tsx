@@ -2,7 +2,7 @@
 
 import { ticksOf } from '@/components/ribbon/scale';
 import { figure, unitText } from '@/lib/format';
-import { axisFromZero } from './axis';
+import { axisFromZero, axisName } from './axis';
 import { ChartFrame, FOOT, PAD, type Places } from './chart-frame';
 import {
   Brackets,
@@ -11,8 +11,10 @@ import {
   ObservationMarks,
   OnsetLines,
   PredictionLines,
+  placeObservations,
   predictionPieces,
 } from './layers';
+import { placeCurveName } from './place-names';
 
 export type JoinedChartProps = {
   /** range of the control axis, the ribbon's own */
@@ -52,7 +54,7 @@ export function JoinedChart(props: JoinedChartProps) {
       alt={sentence(props)}
       xDomain={[from, to]}
       xTicks={(width) => chartTicks(from, to, width)}
-      xName={`${props.label}, ${unitText(props.unit)}`}
+      xName={axisName(props.label, props.unit)}
       y={y}
       yUnit={unitText(props.amplitudeUnit)}
       height={height}
@@ -64,7 +66,7 @@ export function JoinedChart(props: JoinedChartProps) {
           <PredictionLines pieces={pieces} />
           <OnsetLines values={props.onsets} places={places} base={base} />
           {pieces.length > 0 && width >= NAME_FROM ? (
-            <CurveName {...props} places={places} base={base} />
+            <CurveName {...props} pieces={pieces} places={places} base={base} width={width} />
           ) : null}
           <ObservationMarks observations={observations} places={places} base={base} width={width} />
         </>
@@ -82,13 +84,50 @@ function chartTicks(from: number, to: number, width: number) {
   return gap % 2 === 0 ? all.filter((_, i) => (i - offset) % (gap / 2) === 0) : all;
 }
 
-function CurveName({ onsets, places, base }: JoinedChartProps & { places: Places; base: number }) {
-  const at = onsets[0] === undefined ? PAD + 56 : places.x(Math.min(...onsets)) + 36;
-  return (
-    <Name x={at} y={base - 82}>
-      predicted amplitude
-    </Name>
+const CURVE_NAME = 'predicted amplitude';
+
+type CurveNameProps = Pick<JoinedChartProps, 'onsets' | 'observed' | 'observations'> & {
+  pieces: ReturnType<typeof predictionPieces>;
+  places: Places;
+  base: number;
+  width: number;
+};
+
+/** The curve's name beside the first onset, clear of curve, hairlines, brackets' edges and marks. */
+function CurveName({
+  onsets,
+  observed,
+  observations,
+  pieces,
+  places,
+  base,
+  width,
+}: CurveNameProps) {
+  const upright = (value: number) => {
+    const x = places.x(value);
+    return { left: x, right: x + 1, top: 0, bottom: base };
+  };
+  const marks = placeObservations(observations).map(({ control, shift, measure, label }) => {
+    const x = places.x(control) + shift;
+    const room = label ? 24 + label.length * 7 : 10;
+    return {
+      left: x - room,
+      right: x + room,
+      top: places.y(measure.high),
+      bottom: places.y(measure.low),
+    };
+  });
+  const taken = [...onsets, ...observed.flatMap((o) => [o.low, o.high])].map(upright);
+  const curve = pieces.flatMap((piece) =>
+    piece.points.map((p) => ({ x: places.x(p.x), y: places.y(p.y) })),
   );
+  const from = onsets.length > 0 ? places.x(Math.min(...onsets)) + 16 : PAD + 56;
+  const at = placeCurveName(CURVE_NAME, curve, [...taken, ...marks], { from, width, base });
+  return at ? (
+    <Name x={at.x} y={at.y}>
+      {CURVE_NAME}
+    </Name>
+  ) : null;
 }
 
 function largest({ predicted, observations }: JoinedChartProps): number {

@@ -50,3 +50,51 @@ export function placeNames(points: readonly Point[], width: number, height: numb
     return null;
   });
 }
+
+/** Heights over the baseline at which the name of a curve is tried, px; the first that is free is taken. */
+const CURVE_HEIGHTS = [82, 52, 112, 24, 142, 172];
+const CURVE_STEP = 12;
+const CLEAR = 6;
+
+/** Places along a line from point to point, no farther than 4 px apart. */
+function along(points: readonly { x: number; y: number }[]): { x: number; y: number }[] {
+  return points.flatMap((b, i) => {
+    const a = points[i - 1] ?? b;
+    const parts = Math.max(1, Math.ceil(Math.hypot(b.x - a.x, b.y - a.y) / 4));
+    return Array.from({ length: parts }, (_, k) => ({
+      x: a.x + ((b.x - a.x) * (k + 1)) / parts,
+      y: a.y + ((b.y - a.y) * (k + 1)) / parts,
+    }));
+  });
+}
+
+/**
+ * Where the name of a curve is written: as near as may be to the right of `from`, clear of the curve
+ * and of `taken`; null where there is no room.
+ */
+export function placeCurveName(
+  text: string,
+  curve: readonly { x: number; y: number }[],
+  taken: readonly Box[],
+  chart: { from: number; width: number; base: number },
+): { x: number; y: number } | null {
+  const drawn = along(curve);
+  const last = chart.width - 16 - text.length * LETTER;
+  for (let x = chart.from; x <= last; x += CURVE_STEP) {
+    for (const height of CURVE_HEIGHTS) {
+      const box = boxOf(text, x, chart.base - height, false);
+      const wide = {
+        left: box.left - CLEAR,
+        right: box.right + CLEAR,
+        top: box.top - CLEAR,
+        bottom: box.bottom + CLEAR,
+      };
+      if (box.top < 0 || taken.some((other) => overlap(wide, other))) continue;
+      const crossed = drawn.some(
+        (p) => p.x > wide.left && p.x < wide.right && p.y > wide.top && p.y < wide.bottom,
+      );
+      if (!crossed) return { x, y: chart.base - height };
+    }
+  }
+  return null;
+}

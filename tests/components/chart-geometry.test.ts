@@ -1,6 +1,12 @@
 import { describe, expect, test } from 'vitest';
-import { axisFromZero, axisOver, dodge, piecesByStability } from '@/components/charts/axis';
-import { placeNames } from '@/components/charts/place-names';
+import {
+  axisFromZero,
+  axisName,
+  axisOver,
+  dodge,
+  piecesByStability,
+} from '@/components/charts/axis';
+import { placeCurveName, placeNames } from '@/components/charts/place-names';
 
 describe('axes', () => {
   test('from zero: ticks reach the largest value and the domain leaves room above', () => {
@@ -33,7 +39,33 @@ describe('axes', () => {
   });
 });
 
+describe('the name of an axis', () => {
+  test('has its unit, and no comma where there is none', () => {
+    expect(axisName('dilution rate', '/d')).toBe('dilution rate, /d');
+    expect(axisName('promoter strength', '')).toBe('promoter strength');
+  });
+});
+
 describe('curves', () => {
+  test('carry their name where neither they nor anything else passes', () => {
+    const curve = [
+      { x: 100, y: 200 },
+      { x: 300, y: 100 },
+      { x: 700, y: 100 },
+    ];
+    const bar = { left: 240, right: 241, top: 0, bottom: 200 };
+    const chart = { from: 116, width: 800, base: 200 };
+    const at = placeCurveName('predicted amplitude', curve, [bar], chart);
+    if (!at) throw new Error('there is room');
+    const [right, top, bottom] = [at.x + 19 * 6, at.y - 12, at.y + 4];
+    expect(at.x > 241 || right < 240).toBe(true);
+    const heightAt = (x: number) => Math.max(100, 200 - (x - 100) / 2);
+    for (let x = at.x; x <= right; x += 1) {
+      expect(heightAt(x) < top || heightAt(x) > bottom).toBe(true);
+    }
+    const full = { left: 0, right: 800, top: 0, bottom: 200 };
+    expect(placeCurveName('predicted amplitude', curve, [full], chart)).toBeNull();
+  });
   test('are cut where stability changes, sharing the point between', () => {
     const pieces = piecesByStability([0, 1, 2, 3], [5, 6, 7, 8], [true, true, false, false]);
     expect(pieces.map((p) => p.stable)).toEqual([true, false]);
