@@ -6,7 +6,9 @@ import { booking, job, preparation, run, runVerdict, session } from '@/db/schema
 import type { Verdict } from '@/lib/contracts';
 import { replanForm } from '@/lib/contracts/forms/readings';
 import { askEvidence } from '@/lib/server/evidence/ask-evidence';
+import { type DesignResult, workDesign } from '@/lib/server/jobs/works/design';
 import { askReplan } from '@/lib/server/replan/ask-replan';
+import type { DesignPlan } from '@/lib/server/series/design-plan';
 import {
   approveAndLayOut,
   contextOf,
@@ -67,6 +69,73 @@ async function halfDone(wanted: Parameters<typeof studyWithRuns>[2] = {}) {
 
 const ask = (studyId: string, levels = 3, member = lab.investigator) =>
   askReplan(contextOf(db, member, LATER), replanForm.parse({ studyId, levels }));
+
+describe('the next levels of a window with two onsets', () => {
+  test('pass no limit on the way from one onset to the other, whatever the dose in force', () => {
+    const control = { symbol: 'c', from: 0, to: 20 };
+    const spread = (at: number) => Array.from({ length: 50 }, (_, i) => at + (i - 25) / 40);
+    const request = (at: number, oscillates: 'above' | 'below', start: number) => ({
+      onset: { values: spread(at) },
+      oscillates,
+      range: [0, 20] as [number, number],
+      order: 'ascending' as const,
+      levels: 3,
+      replicates: 1,
+      blur: 0,
+      doubt: 0,
+      limits: { start, ceiling: 18, largestStep: 2 },
+      seed: 1,
+    });
+    for (const start of [0, 4.5, 9, 16]) {
+      const plan: DesignPlan = {
+        studyId: uuid(),
+        predictionId: uuid(),
+        scheme: 'climb',
+        reason: '',
+        requests: [request(5, 'above', start), request(14, 'below', start)],
+        control,
+        timeUnit: 'min',
+        outlook: {
+          branch: {
+            control: [0, 20],
+            growthRate: [-0.1, -0.1],
+            frequency: [1, 1],
+            stable: [true, true],
+            steadyState: {},
+          },
+          cycles: [],
+          onsets: [],
+        },
+        noise: null,
+        settleCapMinutes: null,
+        recordCapMinutes: null,
+        replanned: true,
+        replan: {
+          beliefs: [{ values: spread(5) }, { values: spread(14) }],
+          envelope: { doseLow: 1, doseHigh: 17, ceiling: 18, largestStep: 2 },
+          done: [
+            { dose: 2, verdict: 'steady' },
+            { dose: 10, verdict: 'sustained' },
+          ],
+        },
+      };
+      const { levels, designs } = workDesign(plan, () => {}) as DesignResult;
+      expect(designs).toHaveLength(2);
+      expect(levels.map((l) => l.position)).toEqual(levels.map((_, i) => i + 1));
+      const near = (at: number) =>
+        levels.filter((l) => l.purpose === 'onset' && Math.abs(l.dose - at) < 1.5).length;
+      expect(near(5)).toBe(3);
+      expect(near(14)).toBe(3);
+      let at = start;
+      for (const l of levels) {
+        expect(l.dose - at).toBeLessThanOrEqual(2 + 1e-9);
+        expect(l.dose).toBeLessThanOrEqual(17);
+        expect(l.dose).toBeGreaterThanOrEqual(1);
+        at = l.dose;
+      }
+    }
+  });
+});
 
 describe('the next levels of a study with done runs', () => {
   test('become a draft version inside the approval, each level with its reason', async () => {
