@@ -6,6 +6,7 @@ import { database } from './database';
 import { problemOf } from './errors';
 import { log } from './log';
 import { type Member, requireMember } from './member';
+import { retryDeadlock } from './retry-deadlock';
 
 export type ActionContext = {
   db: Conn;
@@ -29,7 +30,7 @@ export function labAction<S extends z.ZodType, T>(options: {
       const allowance = demand(member.role, options.action);
       const input = options.input.parse(raw);
       const context = { db: database(), member, allowance, now: new Date() };
-      return { ok: true, value: await options.handle(context, input) };
+      return { ok: true, value: await retryDeadlock(() => options.handle(context, input)) };
     } catch (error) {
       const problem = problemOf(error);
       if (problem.code === 'internal') log.error({ err: error, action: options.action }, 'action');
