@@ -36,6 +36,11 @@ async function doseBefore(tx: Transaction, of: Of): Promise<number | null> {
 async function assertDose(tx: Transaction, of: Of): Promise<number> {
   const { study, run: r, dose } = of;
   const unit = study.doseUnit;
+  if (study.approvalExpires && of.at > study.approvalExpires) {
+    throw new AppError('not-possible', 'The approval of this study has expired. Set nothing.', {
+      mend: 'The head decides what becomes of this run.',
+    });
+  }
   if (dose === null) {
     throw new AppError('invalid-input', 'Read the dose back from the rig and enter it.', {
       at: 'dose',

@@ -5,6 +5,7 @@ import type { undoForm } from '@/lib/contracts/forms/bench';
 import type { ActionContext } from '../action';
 import { audit } from '../audit';
 import { AppError, notFound } from '../errors';
+import { askEvidence } from '../evidence/ask-evidence';
 import { lockSession } from '../sessions/lock-session';
 import { shiftWindows, stayOf } from './run-times';
 
@@ -37,7 +38,7 @@ export async function undoVisit(
       .update(visit)
       .set({ doneAt: null, doneBy: null, outcome: null, remark: null })
       .where(eq(visit.id, of.id));
-    await tx
+    const [gone] = await tx
       .delete(reading)
       .where(and(eq(reading.visitId, of.id), eq(reading.labId, member.labId)));
     if (of.kind === 'set dose') {
@@ -69,6 +70,13 @@ export async function undoVisit(
       subjectId: of.id,
       data: { undone: true, was: of.outcome, at: of.doneAt.toISOString() },
     });
+    if (gone.affectedRows > 0) {
+      await askEvidence(tx, {
+        labId: member.labId,
+        studyId: locked.study.id,
+        askedBy: member.userId,
+      });
+    }
     return { visitId: of.id };
   });
 }

@@ -1,14 +1,36 @@
 import type { z } from 'zod';
+import type { Conn } from '@/db/client';
 import type { layOutForm } from '@/lib/contracts/forms/series';
 import type { ActionContext } from '../action';
 import { AppError } from '../errors';
 import { enqueue } from '../jobs/queue';
-import { approvedUntil, assertApprovable } from '../series/approvable';
+import { approvedUntil, assertApprovable, needsReference } from '../series/approvable';
+import { preparationsUsed } from '../series/envelope';
 import { lockSeries } from '../series/lock';
+import type { SeriesVersion, Study } from '../series/types';
 import { heldByStop } from '../stops/held-by-stop';
 import { buildLayOutPlan } from './build-plan';
+import type { LayOutPlan } from './plan';
 
 const LONGEST_DAYS = 400;
+
+/** An approval on animals or volunteers names a number of them; those lost count as well. */
+async function assertNumbers(
+  conn: Conn,
+  of: { study: Study; version: SeriesVersion; plan: LayOutPlan },
+): Promise<void> {
+  const { study, version, plan } = of;
+  const most = version.envelope?.preparations;
+  if (most === undefined || !needsReference(study.perturbs)) return;
+  const used = await preparationsUsed(conn, { labId: study.labId, studyId: study.id });
+  const all = new Set([...used, ...plan.runs.map((r) => r.preparation.id)]);
+  if (all.size <= most) return;
+  throw new AppError(
+    'not-possible',
+    `The approval is for preparations up to ${most} in number; with this lay-out they would be ${all.size}, those already worked with counted.`,
+    { mend: 'Design a version with the number that is needed; the head decides on it.' },
+  );
+}
 
 /** Asks for a lay-out of an approved version; nothing is placed before the head has approved it. */
 export async function askLayOut(
@@ -47,6 +69,7 @@ export async function askLayOut(
       );
     }
     const plan = await buildLayOutPlan(tx, { member, study, version, levels, notBefore, notAfter });
+    await assertNumbers(tx, { study, version, plan });
     const held = await heldByStop(tx, {
       labId: member.labId,
       studyId: study.id,

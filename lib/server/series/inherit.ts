@@ -1,7 +1,8 @@
 import type { Conn } from '@/db/client';
 import { approvedVersion } from '@/db/queries/series';
 import { withinEnvelope } from '@/lib/planner/replan/within-envelope';
-import { preparationsNeeded } from './envelope';
+import { needsReference } from './approvable';
+import { preparationsInAll, preparationsNeeded } from './envelope';
 import type { Level, SeriesVersion, Study } from './types';
 
 /**
@@ -29,7 +30,11 @@ export async function coveringApproval(
     undefined,
     stepped,
   );
-  const needed = preparationsNeeded(version.scheme, version.replicates, levels.length);
+  const of = { labId: about.labId, studyId: about.id };
+  // Where life is concerned the number approved is of all, not of one version.
+  const needed = needsReference(about.perturbs)
+    ? await preparationsInAll(conn, of, version, levels.length)
+    : preparationsNeeded(version.scheme, version.replicates, levels.length);
   const sameDate = (about.approvalExpires?.toISOString() ?? null) === envelope.lastDate;
   const sameScheme = version.scheme === approved.scheme;
   return fits.ok && needed <= envelope.preparations && sameDate && sameScheme ? approved : null;
