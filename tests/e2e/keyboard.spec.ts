@@ -1,5 +1,5 @@
 import { expect, type Locator, type Page, test } from '@playwright/test';
-import { putLater } from './support/calendar';
+import { itemOf, putLater } from './support/calendar';
 import { laidOut, movable } from './support/laid-out';
 import { pageOf, password, person } from './support/people';
 
@@ -54,12 +54,11 @@ test('a session is moved from the list by the keyboard alone', async ({ browser 
   const view = page.getByRole('navigation', { name: 'View' }).getByRole('link', { name: 'List' });
   await press(page, view);
   await expect(view).toHaveAttribute('aria-current', 'page');
-  const link = page.getByRole('main').locator(`a[href="/sessions/${session.id}"]`);
+  const item = itemOf(page, session.id);
   const later = page.getByRole('navigation', { name: 'Time' }).getByRole('link', { name: 'Later' });
   const empty = page.getByRole('main').getByText('No sessions in this week.');
-  await expect(link.or(empty).first()).toBeVisible();
-  if ((await link.count()) === 0) await press(page, later);
-  const item = page.getByRole('main').getByRole('listitem').filter({ has: link });
+  await expect(item.or(empty).first()).toBeVisible();
+  if ((await item.count()) === 0) await press(page, later);
   const move = item.getByRole('button', { name: /^Move run/ });
   await press(page, move);
   await expect(move).toHaveAttribute('aria-expanded', 'true');

@@ -9,12 +9,18 @@ export async function openCalendar(page: Page, view: 'List' | 'Week'): Promise<v
   await expect(key).toHaveAttribute('aria-current', 'page');
 }
 
+/** The line of a session in a list. */
+export const itemOf = (page: Page, sessionId: string): Locator =>
+  page
+    .getByRole('main')
+    .getByRole('listitem')
+    .filter({ has: page.locator(`a[href="/sessions/${sessionId}"]`) });
+
 /** A session in the list; steps a week on where this week does not have it. */
 export async function inList(page: Page, sessionId: string): Promise<Locator> {
   await openCalendar(page, 'List');
-  const link = page.getByRole('main').locator(`a[href="/sessions/${sessionId}"]`);
-  const item = page.getByRole('main').getByRole('listitem').filter({ has: link });
-  if ((await link.count()) === 0) await nextWeek(page);
+  const item = itemOf(page, sessionId);
+  if ((await item.count()) === 0) await nextWeek(page);
   await expect(item).toBeVisible();
   return item;
 }
