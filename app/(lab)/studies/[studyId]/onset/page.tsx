@@ -3,7 +3,7 @@ import { notFound } from 'next/navigation';
 import { Judging } from '@/components/evidence/judging';
 import { Caution, EmptyState, KeyLink, Plate } from '@/components/ui';
 import { newestJob } from '@/db/queries/active-job';
-import { estimateHistory, latestEstimate } from '@/db/queries/estimates';
+import { estimateHistory, latestEstimate, type OnsetEstimate } from '@/db/queries/estimates';
 import { approvedVersion } from '@/db/queries/series';
 import { studyById } from '@/db/queries/studies';
 import { stampText } from '@/lib/format';
@@ -13,6 +13,7 @@ import { onsetView } from '@/lib/server/evidence/onset-view';
 import { runRows } from '@/lib/server/evidence/run-rows';
 import { may, pageMember } from '@/lib/server/member';
 import { studyRibbon } from '@/lib/server/predictions/study-ribbon';
+import { engineVersion } from '@/lib/sim/engine-version';
 import { History } from './_components/history';
 import { MethodTables } from './_components/method-table';
 import { OnsetFinding } from './_components/onset-finding';
@@ -41,10 +42,7 @@ export default async function OnsetPage({ params }: { params: Promise<{ studyId:
   ]);
   if (!shown) return <NoPrediction studyId={studyId} />;
   const { prediction, ribbon } = shown;
-  const stale =
-    estimate && estimate.predictionId !== prediction.id
-      ? 'The onset below was set against an earlier prediction.'
-      : null;
+  const stale = estimate ? staleWords(estimate, prediction.id) : null;
   const judging = (
     <Judging
       studyId={studyId}
@@ -109,6 +107,17 @@ export default async function OnsetPage({ params }: { params: Promise<{ studyId:
       </div>
     </>
   );
+}
+
+/** Why an estimate should be worked out anew; null while it stands. */
+function staleWords(estimate: OnsetEstimate, predictionId: string): string | null {
+  if (estimate.predictionId !== predictionId) {
+    return 'The onset below was set against an earlier prediction.';
+  }
+  if (estimate.engineVersion !== engineVersion) {
+    return `The onset below was worked out by engine version ${estimate.engineVersion}; this is version ${engineVersion}.`;
+  }
+  return null;
 }
 
 function NoPrediction({ studyId }: { studyId: string }) {

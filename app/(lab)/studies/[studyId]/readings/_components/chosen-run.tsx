@@ -26,9 +26,7 @@ export function ChosenRun(props: Props) {
   return (
     <Plate title={title} id="run" className="mt-6">
       <p className="mb-3 text-ink2">
-        {row.setAt
-          ? `Dose set ${stampText(row.setAt, zone)}; every time counts from there.`
-          : 'Its dose has not been set yet.'}
+        {settingWords(row, zone)}
         {simulated && row.readings > 0 ? ' Simulated readings.' : ''}
       </p>
       {record ? (
@@ -37,11 +35,20 @@ export function ChosenRun(props: Props) {
           <p className="mt-1 text-caption text-ink2">{record.said}</p>
         </>
       ) : (
-        <p className="text-ink2">No readings came in for it yet.</p>
+        <p className="text-ink2">
+          {row.way === 'published'
+            ? 'Its verdict is as published; this lab has no readings of it.'
+            : 'No readings came in for it yet.'}
+        </p>
       )}
       <Reasons {...props} />
     </Plate>
   );
+}
+
+function settingWords({ setAt, way }: RunRow, zone: string): string {
+  if (setAt) return `Dose set ${stampText(setAt, zone)}; every time counts from there.`;
+  return way === 'published' ? '' : 'Its dose has not been set yet.';
 }
 
 function Reasons({ studyId, row, units, zone, overrules }: Props) {
