@@ -12,6 +12,8 @@ export type Column<Row> = {
   kind?: 'text' | 'figure';
   /** the column that names the row */
   strong?: boolean;
+  /** shown at a desk's width alone, or below it alone */
+  only?: 'wide' | 'narrow';
   cell: (row: Row) => ReactNode;
 };
 
@@ -71,12 +73,16 @@ export function DataTable<Row>(props: TableProps<Row>) {
 
 const EDGE = 'px-2.5 first:pl-4 last:pr-[11px]';
 
+const onlyClass = ({ only }: { only?: 'wide' | 'narrow' }) =>
+  only && (only === 'wide' ? 'hidden desk:table-cell' : 'desk:hidden');
+
 function Head<Row>({ column }: { column: Column<Row> }) {
   return (
     <th
       scope="col"
       className={clsx(
         EDGE,
+        onlyClass(column),
         'pt-2 pb-2 align-bottom text-caption font-medium text-ink2',
         column.kind === 'figure' && !column.strong ? 'text-right' : 'text-left',
       )}
@@ -90,7 +96,8 @@ function Head<Row>({ column }: { column: Column<Row> }) {
 function Cell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
   const className = clsx(
     EDGE,
-    'h-[38px] py-2 text-left font-normal',
+    onlyClass(column),
+    'h-[38px] py-1.5 text-left font-normal',
     column.kind === 'figure' && 'whitespace-nowrap font-mono',
     column.kind === 'figure' && !column.strong && 'text-right',
     column.strong && 'font-semibold',

@@ -62,8 +62,11 @@ export function CalendarRoom(props: Props) {
   const [said, setSaid] = useState('');
   const onDone = useCallback(
     (moved: { moved: number }) => {
+      const others = moved.moved - 1;
       setSaid(
-        moved.moved > 1 ? `Moved, with ${moved.moved - 1} later sessions of the run.` : 'Moved.',
+        others > 0
+          ? `Moved, with ${others} later ${others === 1 ? 'session' : 'sessions'} of the run.`
+          : 'Moved.',
       );
       router.refresh();
     },
