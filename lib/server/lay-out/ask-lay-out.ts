@@ -13,6 +13,12 @@ import { buildLayOutPlan } from './build-plan';
 import type { LayOutPlan } from './plan';
 
 const LONGEST_DAYS = 400;
+const GRID_MS = 5 * 60_000;
+/** Nobody can be at a rig the moment that a lay-out is asked for. */
+const LEAD_MS = 5 * 60_000;
+
+/** The first full five minutes that people can still be told of. */
+const earliest = (now: Date) => Math.ceil((now.getTime() + LEAD_MS) / GRID_MS) * GRID_MS;
 
 /** An approval on animals or volunteers names a number of them; those lost count as well. */
 async function assertNumbers(
@@ -37,7 +43,7 @@ export async function askLayOut(
   { db, member, now }: ActionContext,
   input: z.output<typeof layOutForm>,
 ): Promise<{ jobId: string }> {
-  const notBefore = new Date(Math.max(new Date(input.notBefore).getTime(), now.getTime()));
+  const notBefore = new Date(Math.max(new Date(input.notBefore).getTime(), earliest(now)));
   const wanted = new Date(input.notAfter);
   return db.transaction(async (tx) => {
     const { study, version, levels } = await lockSeries(tx, {

@@ -57,7 +57,7 @@ async function sessionFacts(conn: Conn, labId: string, ids: string[]): Promise<S
   }));
 }
 
-/** The person's coming sessions of one study, for the mail that tells of a new lay-out. */
+/** The person's sessions of one study that are not over, for the mail that tells of a new lay-out. */
 async function comingSessions(conn: Conn, row: OutboxRow, now: Date): Promise<string[]> {
   const rows = await conn
     .select({ id: session.id })
@@ -68,7 +68,7 @@ async function comingSessions(conn: Conn, row: OutboxRow, now: Date): Promise<st
         eq(session.studyId, row.studyId ?? ''),
         eq(session.personId, row.recipientId),
         eq(session.state, 'planned'),
-        gte(session.startsAt, now),
+        gte(session.endsAt, now),
       ),
     )
     .orderBy(asc(session.startsAt))
