@@ -7,7 +7,7 @@ import {
   fallingMap,
 } from '@/lib/server/predictions/ribbon';
 import { growthRateAt, settlingNear } from '@/lib/server/predictions/settling';
-import { doseBand, predictionSentence, waitText } from '@/lib/server/predictions/words';
+import { doseBand, headText, predictionSentence, waitText } from '@/lib/server/predictions/words';
 
 const onset: PredictedOnset = {
   value: 0.151,
@@ -70,6 +70,24 @@ describe('the finding of a prediction', () => {
       'Oscillates from 0.151 /d (0.112–0.208) to 0.97 /d, with periods of 5.9 d and 5.4 d at the ends.',
     );
     expect(say([])).toBe('No onset between 0 and 1.3 /d.');
+  });
+
+  test('names the control parameter where no unit tells what the figure is', () => {
+    const words = { answer: answerOf([onset]), control, timeUnit: 'd', label: 'promoter strength' };
+    expect(plain(predictionSentence({ ...words, unit: '' }))).toMatch(
+      /^Begins to oscillate at promoter strength 0.151 /,
+    );
+    expect(plain(predictionSentence({ ...words, unit: '1/d' }))).toMatch(/at 0.151 \/d /);
+  });
+
+  test('begins the head of a column with a capital, unless the name has its own', () => {
+    expect(['pump rate', 'pH', 'CO2 flow', 'k', 'dose'].map(headText)).toEqual([
+      'Pump rate',
+      'pH',
+      'CO2 flow',
+      'k',
+      'Dose',
+    ]);
   });
 
   test('takes the band of doses from the reachable draws alone', () => {

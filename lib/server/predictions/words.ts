@@ -1,5 +1,13 @@
 import type { Control, PredictAnswer, PredictedOnset } from '@/lib/contracts';
-import { figure, fineDecimalsFor, fixed, modelTimeText, rangeText, withUnit } from '@/lib/format';
+import {
+  figure,
+  fineDecimalsFor,
+  fixed,
+  modelTimeText,
+  rangeText,
+  unitText,
+  withUnit,
+} from '@/lib/format';
 
 /** An onset with its band: "0.151 /d (0.112–0.208)"; the value alone where nothing was drawn. */
 export function onsetText(onset: PredictedOnset, unit: string): string {
@@ -10,25 +18,37 @@ export function onsetText(onset: PredictedOnset, unit: string): string {
   return `${withUnit(fixed(value, decimals), unit)} (${band})`;
 }
 
-type Words = { answer: PredictAnswer; control: Control; unit: string; timeUnit: string };
+type Words = {
+  answer: PredictAnswer;
+  control: Control;
+  unit: string;
+  timeUnit: string;
+  /** name of the control parameter, said where no unit tells what a figure is */
+  label?: string;
+};
+
+/** A name as the head of a column: "pump rate" becomes "Pump rate"; "pH" stays. */
+export const headText = (name: string): string =>
+  /^[a-zà-ÿ][a-zà-ÿ ]/.test(name) ? name.charAt(0).toUpperCase() + name.slice(1) : name;
 
 const listed = (parts: string[]) =>
   parts.length < 2 ? parts.join('') : `${parts.slice(0, -1).join(', ')} and ${parts.at(-1)}`;
 
 /** What a prediction says, in one sentence. */
-export function predictionSentence({ answer, control, unit, timeUnit }: Words): string {
+export function predictionSentence({ answer, control, unit, timeUnit, label }: Words): string {
   const [first, second, ...more] = answer.onsets;
+  const name = !unitText(unit) && label ? `${label} ` : '';
   if (!first) {
-    return `No onset between ${figure(control.from)} and ${withUnit(figure(control.to), unit)}.`;
+    return `No onset between ${name}${figure(control.from)} and ${withUnit(figure(control.to), unit)}.`;
   }
   const period = (onset: PredictedOnset) => modelTimeText(onset.period, timeUnit, 2);
   if (!second) {
-    const at = `${onsetText(first, unit)}, with a period of ${period(first)}.`;
+    const at = `${name}${onsetText(first, unit)}, with a period of ${period(first)}.`;
     return first.oscillates === 'above' ? `Begins to oscillate at ${at}` : `Oscillates below ${at}`;
   }
   const window = first.oscillates === 'above' && second.oscillates === 'below';
   if (more.length === 0 && window) {
-    return `Oscillates from ${onsetText(first, unit)} to ${onsetText(second, unit)}, with periods of ${period(first)} and ${period(second)} at the ends.`;
+    return `Oscillates from ${name}${onsetText(first, unit)} to ${onsetText(second, unit)}, with periods of ${period(first)} and ${period(second)} at the ends.`;
   }
   const all = answer.onsets.map((o) => `${onsetText(o, unit)} (oscillates ${o.oscillates})`);
   return `${answer.onsets.length} onsets: ${listed(all)}.`;

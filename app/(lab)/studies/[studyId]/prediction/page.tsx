@@ -68,7 +68,20 @@ export default async function PredictionPage({ params }: { params: Promise<{ stu
             prediction={shown.prediction}
             ribbon={shown.ribbon}
             at={stampText(shown.prediction.createdAt, member.lab.timeZone)}
-            actions={predicts ? <PredictPanel {...panel} /> : null}
+            actions={
+              predicts ? (
+                <div className="flex w-full flex-col gap-6">
+                  {stale || shown.prediction.answer.onsets.length === 0 ? null : (
+                    <div>
+                      <KeyLink href={`/studies/${studyId}/series`} kind="filled">
+                        Go to the series
+                      </KeyLink>
+                    </div>
+                  )}
+                  <PredictPanel {...panel} compact />
+                </div>
+              ) : null
+            }
           />
         </>
       )}

@@ -1,9 +1,16 @@
 import { type Column, DataTable, IntervalFigure } from '@/components/ui';
 import type { PredictedOnset } from '@/lib/contracts';
 import { figure, fineDecimalsFor, unitText } from '@/lib/format';
-import { criticalityWord, doseBand } from '@/lib/server/predictions/words';
+import { criticalityWord, doseBand, headText } from '@/lib/server/predictions/words';
 
-type Units = { control: string; time: string; dose: string; doseLabel: string };
+type Units = {
+  control: string;
+  time: string;
+  dose: string;
+  doseLabel: string;
+  /** more dose gives less of the control parameter */
+  falling: boolean;
+};
 
 /** A value with its band, or the value alone where there is none. */
 function Figures(props: { value: number; band: { low: number; high: number } | null }) {
@@ -13,12 +20,25 @@ function Figures(props: { value: number; band: { low: number; high: number } | n
   return <IntervalFigure interval={{ value, ...band }} style={{ decimals }} />;
 }
 
+/** On which side of the onset; said of the dose too where more of it gives less of the control. */
+function Side({ oscillates, falling }: { oscillates: 'above' | 'below'; falling: boolean }) {
+  if (!falling) return oscillates;
+  return (
+    <span className="block py-1 leading-5 whitespace-nowrap">
+      {oscillates}
+      <span className="block text-caption text-ink2">
+        at {oscillates === 'above' ? 'lower' : 'higher'} doses
+      </span>
+    </span>
+  );
+}
+
 function without({ spread }: PredictedOnset): string {
   if (!spread) return '–';
   return `${Math.round(spread.none * spread.draws)} of ${spread.draws}`;
 }
 
-const columns = ({ control, time, dose, doseLabel }: Units): Column<PredictedOnset>[] => [
+const columns = ({ control, time, dose, doseLabel, falling }: Units): Column<PredictedOnset>[] => [
   {
     key: 'value',
     head: 'Onset',
@@ -29,7 +49,7 @@ const columns = ({ control, time, dose, doseLabel }: Units): Column<PredictedOns
   },
   {
     key: 'dose',
-    head: doseLabel,
+    head: headText(doseLabel),
     unit: unitText(dose),
     kind: 'figure',
     cell: (o) =>
@@ -42,7 +62,7 @@ const columns = ({ control, time, dose, doseLabel }: Units): Column<PredictedOns
   {
     key: 'side',
     head: 'Oscillates',
-    cell: (o) => o.oscillates,
+    cell: (o) => <Side oscillates={o.oscillates} falling={falling} />,
   },
   { key: 'how', head: 'Onset is', cell: (o) => criticalityWord[o.criticality] },
   {

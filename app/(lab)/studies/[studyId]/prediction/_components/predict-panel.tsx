@@ -18,6 +18,8 @@ type PanelProps = {
   /** the one act of the page, or one among others */
   keyKind: 'filled' | 'outlined';
   keyName: string;
+  /** stands in the column of a finding */
+  compact?: boolean;
   /** shown while nothing is being worked out */
   children?: ReactNode;
 };
@@ -42,6 +44,7 @@ export function PredictPanel(props: PanelProps) {
   if (jobId) {
     return (
       <Working
+        compact={props.compact}
         jobId={jobId}
         done={job?.done ?? 0}
         total={job?.total ?? 0}
@@ -57,12 +60,25 @@ export function PredictPanel(props: PanelProps) {
   );
 }
 
-function Working(props: { jobId: string; done: number; total: number; stage: string }) {
-  const { jobId, done, total, stage } = props;
+type WorkingProps = {
+  jobId: string;
+  done: number;
+  total: number;
+  stage: string;
+  compact?: boolean;
+};
+
+function Working(props: WorkingProps) {
+  const { jobId, done, total, stage, compact } = props;
   const { run, pending, problem } = useAction(cancelJob);
   return (
-    <Plate className="mb-6">
-      <LoadingRibbon what="draws" done={total > 0 ? done : undefined} total={total || undefined} />
+    <Plate className="mb-6 w-full">
+      <LoadingRibbon
+        size={compact ? 'card' : 'page'}
+        what="draws"
+        done={total > 0 ? done : undefined}
+        total={total || undefined}
+      />
       <div className="mt-4 flex flex-wrap items-center gap-4">
         <p role="status" className="text-ink2">
           {stage ? `Working: ${stage}.` : 'Waiting for its turn.'} You may leave this page; the
@@ -97,17 +113,16 @@ function AskForm(props: PanelProps & { onAsked: (jobId: string) => void }) {
   return (
     <form
       noValidate
-      className="flex flex-col gap-3"
+      className="flex w-full flex-col gap-3"
       onSubmit={(event) => {
         event.preventDefault();
         void submit();
       }}
     >
-      <div className="flex flex-wrap items-start gap-4">
+      <div className="grid max-w-96 grid-cols-2 items-start gap-4">
         <NumberField
           id="draws"
           label="Draws"
-          className="w-24"
           value={draws}
           onChange={(event) => setDraws(event.target.value)}
           problem={found.draws}
@@ -115,19 +130,20 @@ function AskForm(props: PanelProps & { onAsked: (jobId: string) => void }) {
         <NumberField
           id="seed"
           label="Seed"
-          className="w-24"
           value={seed}
           onChange={(event) => setSeed(event.target.value)}
           problem={found.seed}
         />
-        <Key kind={keyKind} type="submit" pending={pending} className="mt-5">
-          {pending ? 'Asking' : keyName}
-        </Key>
       </div>
       <p className="max-w-[640px] text-caption text-ink2">
         Each draw takes the parameters from their spreads; the band follows from all of them. The
         same seed gives the same answer.
       </p>
+      <div>
+        <Key kind={keyKind} type="submit" pending={pending}>
+          {pending ? 'Asking' : keyName}
+        </Key>
+      </div>
       <ActionProblem problem={problem} />
     </form>
   );

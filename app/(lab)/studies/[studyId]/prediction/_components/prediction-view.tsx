@@ -2,7 +2,8 @@ import { GrowthChart, JoinedPlate } from '@/components/charts';
 import { Caution, Finding, FindingAndTable, Plate } from '@/components/ui';
 import type { PredictionRow } from '@/db/queries/predictions';
 import type { StudyRow } from '@/db/queries/studies';
-import { type answerRibbon, firstReadout } from '@/lib/server/predictions/ribbon';
+import { figure } from '@/lib/format';
+import { type answerRibbon, fallingMap, firstReadout } from '@/lib/server/predictions/ribbon';
 import { settlingNear } from '@/lib/server/predictions/settling';
 import { criticalityWords, noOnsetWords, predictionSentence } from '@/lib/server/predictions/words';
 import { controlToDose } from '@/lib/sim/dose-map';
@@ -28,11 +29,18 @@ export function PredictionView(props: ViewProps) {
     time: model.timeUnit,
     dose: study.doseUnit,
     doseLabel: study.doseLabel,
+    falling: fallingMap(control),
   };
   const noOnset = answer.onsets.length === 0;
   const finding = (
     <Finding
-      title={predictionSentence({ answer, control, unit: ribbon.unit, timeUnit: model.timeUnit })}
+      title={predictionSentence({
+        answer,
+        control,
+        unit: ribbon.unit,
+        label: ribbon.label,
+        timeUnit: model.timeUnit,
+      })}
       actions={actions}
     >
       {noOnset ? <p>{noOnsetWords(answer)}</p> : null}
@@ -101,13 +109,17 @@ function Notes({ notes }: { notes: PredictionRow['answer']['notes'] }) {
       <ul className="flex list-disc flex-col gap-2 pl-5">
         {notes.map((note) => (
           <li key={`${note.code} ${note.text}`} className="first-letter:uppercase">
-            {note.text}
+            {sensibleDigits(note.text)}
           </li>
         ))}
       </ul>
     </Plate>
   );
 }
+
+/** Figures within prose, to four digits: the engine's notes carry more than a person reads. */
+const sensibleDigits = (text: string) =>
+  text.replace(/-?\d+\.\d+(?:e[-+]?\d+)?/g, (digits) => figure(Number(digits), 4));
 
 type Units = { control: string; time: string; dose: string; doseLabel: string };
 
@@ -118,12 +130,12 @@ function Waiting({ prediction, units }: ViewProps & { units: Units }) {
     .map((row) => ({ ...row, dose: controlToDose(request.control.doseMap, row.control) }));
   if (rows.length === 0) return null;
   return (
-    <section className="mt-8">
+    <section className="mt-8 max-w-[960px]">
       <h2 className="mb-1 text-section font-semibold">How long to wait</h2>
       <p className="mb-3 max-w-[640px] text-ink2">
         Near an onset everything is slow. On the steady side a disturbance needs 3 to 4.6 time
-        constants to die away (95 to 99 %); on the other side an oscillation needs as long to grow
-        from 1 % to half of its size. A record that begins earlier shows the change of dose, not the
+        constants to die away (95 to 99 %); on the other side an oscillation needs as long to grow
+        from 1 % to half of its size. A record that begins earlier shows the change of dose, not the
         level.
       </p>
       <WaitingTable rows={rows} units={units} />

@@ -1,13 +1,18 @@
 import { type Column, DataTable } from '@/components/ui';
-import { figure, fineDecimalsFor, fixed, unitText } from '@/lib/format';
+import { fineDecimalsFor, fixed, unitText } from '@/lib/format';
 import type { SettlingRow } from '@/lib/server/predictions/settling';
-import { waitText } from '@/lib/server/predictions/words';
+import { headText, waitText } from '@/lib/server/predictions/words';
 
 type Row = SettlingRow & { dose: number | null };
 type Units = { control: string; time: string; dose: string; doseLabel: string };
 
-function waiting({ side, from, to }: Row, timeUnit: string): string {
-  return `${waitText(from, to, timeUnit)} to ${side === 'steady' ? 'settle' : 'grow'}`;
+function Wait({ row, timeUnit }: { row: Row; timeUnit: string }) {
+  const { side, from, to } = row;
+  return (
+    <span className="whitespace-nowrap">
+      {waitText(from, to, timeUnit)} to {side === 'steady' ? 'settle' : 'grow'}
+    </span>
+  );
 }
 
 /** Decimals that keep neighbouring levels apart, two digits of their smallest gap. */
@@ -17,7 +22,13 @@ function decimalsApart(values: (number | null)[]): number {
   return Math.max(0, fineDecimalsFor(Math.min(...gaps.filter((g) => g > 0))));
 }
 
-type Decimals = { control: number; dose: number };
+/** Decimals that leave the rate nearest to zero two digits, so that the points of all stand in line. */
+function decimalsOfRates(rates: number[]): number {
+  const smallest = Math.min(...rates.map(Math.abs).filter((r) => r > 0));
+  return Math.min(8, Math.max(0, fineDecimalsFor(smallest)));
+}
+
+type Decimals = { control: number; dose: number; rate: number };
 
 const columns = ({ control, time, dose, doseLabel }: Units, decimals: Decimals): Column<Row>[] => [
   {
@@ -30,7 +41,7 @@ const columns = ({ control, time, dose, doseLabel }: Units, decimals: Decimals):
   },
   {
     key: 'dose',
-    head: doseLabel,
+    head: headText(doseLabel),
     unit: unitText(dose),
     kind: 'figure',
     cell: (r) =>
@@ -46,9 +57,9 @@ const columns = ({ control, time, dose, doseLabel }: Units, decimals: Decimals):
     head: 'Growth rate',
     unit: `/${unitText(time)}`,
     kind: 'figure',
-    cell: (r) => figure(r.growthRate, 2),
+    cell: (r) => fixed(r.growthRate, decimals.rate),
   },
-  { key: 'wait', head: 'Wait', kind: 'figure', cell: (r) => waiting(r, time) },
+  { key: 'wait', head: 'Wait', cell: (r) => <Wait row={r} timeUnit={time} /> },
 ];
 
 /** How long a level near an onset needs before its record says anything. */
@@ -59,6 +70,7 @@ export function WaitingTable({ rows, units }: { rows: Row[]; units: Units }) {
       columns={columns(units, {
         control: decimalsApart(rows.map((r) => r.control)),
         dose: decimalsApart(rows.map((r) => r.dose)),
+        rate: decimalsOfRates(rows.map((r) => r.growthRate)),
       })}
       rows={rows}
       rowKey={(r) => String(r.control)}
