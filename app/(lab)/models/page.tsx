@@ -27,7 +27,7 @@ export default async function ModelsPage() {
   return (
     <PageBody>
       <PageHead title="Models" subtitle="Published systems to start from, and the lab’s own" />
-      <div className="mt-6 grid items-start gap-6 desk:grid-cols-2">
+      <div className="mt-6 grid gap-6 desk:grid-cols-2">
         {library.map((model) => (
           <ModelPlate
             key={model.id}

@@ -7,7 +7,7 @@ import { figure, withUnit } from '@/lib/format';
 type Row = { study: StudyRow; system: SystemOutline };
 
 const range = ({ system }: Row) =>
-  `${system.controlSymbol}, ${figure(system.from)} to ${withUnit(figure(system.to), system.controlUnit)}`;
+  `${system.controlSymbol}, ${figure(system.from)}\u00a0to\u00a0${withUnit(figure(system.to), system.controlUnit)}`;
 
 const columns = (startable: boolean): Column<Row>[] => [
   {
@@ -15,13 +15,16 @@ const columns = (startable: boolean): Column<Row>[] => [
     head: 'Study',
     strong: true,
     cell: ({ study }) => (
-      <Link href={`/studies/${study.id}/system`} className="underline-offset-4 hover:underline">
+      <Link
+        href={`/studies/${study.id}/system`}
+        className="block py-1.5 leading-5 underline-offset-4 hover:underline"
+      >
         {study.title}
       </Link>
     ),
   },
   { key: 'name', head: 'Model', cell: ({ system }) => system.name },
-  { key: 'version', head: 'Version', cell: ({ system }) => `System v${system.number}` },
+  { key: 'version', head: 'Version', cell: ({ system }) => `v${system.number}` },
   { key: 'control', head: 'Control parameter', cell: range },
   ...(startable
     ? [

@@ -15,7 +15,7 @@ export function ModelPlate({ model: published, predicted, startable }: PlateProp
   const parameter = model.parameters.find((p) => p.symbol === control.symbol);
   const range = `${figure(control.from)} to ${withUnit(figure(control.to), parameter?.unit)}`;
   return (
-    <Plate title={title} id={id}>
+    <Plate title={title} id={id} className="flex flex-col">
       <p>{summary}</p>
       <div className="mt-4">
         <Equations model={model} />
@@ -38,7 +38,7 @@ export function ModelPlate({ model: published, predicted, startable }: PlateProp
       {predicted ? (
         <div className="mt-4 border-t border-rule pt-3">
           <OnsetRibbon size="card" {...predicted.ribbon} />
-          <p className="mt-1 text-caption text-ink2">
+          <p className="mt-2 text-caption text-ink2">
             As predicted in{' '}
             <Link href={`/studies/${predicted.studyId}/prediction`} className="underline">
               {predicted.title}
@@ -48,7 +48,7 @@ export function ModelPlate({ model: published, predicted, startable }: PlateProp
         </div>
       ) : null}
       {startable ? (
-        <div className="mt-4">
+        <div className="mt-auto pt-4">
           <KeyLink href={`/studies/new?model=${id}`}>Start a study from this</KeyLink>
         </div>
       ) : null}

@@ -1,11 +1,13 @@
 import { notFound } from 'next/navigation';
 import type { ReactNode } from 'react';
+import { JoinedPlate } from '@/components/charts';
 import { Caution, Finding, FindingAndTable, KeyLink, Plate } from '@/components/ui';
 import { type StudyRow, studyById, studyProgress, usableRigs } from '@/db/queries/studies';
-import type { Station } from '@/db/queries/study-stations';
+import { type Station, waitingAt } from '@/db/queries/study-stations';
 import { dateText, figure, stampText, unitText, withUnit, zoned } from '@/lib/format';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
+import { studyRibbon } from '@/lib/server/predictions/study-ribbon';
 import { ChangeStudy } from './_components/change-study';
 
 /** What the study is, its limits, and what comes next. */
@@ -16,12 +18,17 @@ export default async function StudyPage({ params }: { params: Promise<{ studyId:
   const db = database();
   const study = await studyById(db, { labId, studyId });
   if (!study) notFound();
-  const stations = (await studyProgress(db, { labId, studyId })) ?? [];
+  const [progress, shown] = await Promise.all([
+    studyProgress(db, { labId, studyId }),
+    studyRibbon(db, { labId, studyId, ceilingDose: study.ceilingDose }),
+  ]);
+  const stations = progress ?? [];
   const writes = may(member, 'write system');
   const facts = factsOf(study, member.lab.timeZone);
   const rigs = writes ? await usableRigs(db, { labId }) : [];
   return (
     <>
+      {shown ? <JoinedPlate {...shown.ribbon} /> : null}
       <FindingAndTable
         finding={<Next studyId={studyId} stations={stations} />}
         table={
@@ -107,22 +114,30 @@ const NEXT: Record<Station['key'], { title: string; key: string }> = {
   },
 };
 
+const ALL_DONE = 'Every step of this study is done.';
+
+/** A step that is under way: "Sessions: 22 of 24 done." */
+const begunTitle = ({ name, fact }: Station) => `${name}: ${fact}.`;
+
 /** The first step that is not finished, with the way to it. */
 function Next({ studyId, stations }: { studyId: string; stations: Station[] }) {
-  const open = stations.find((s) => s.state !== 'done');
+  const waiting = stations[waitingAt(stations)];
+  const open = waiting ?? stations.find((s) => s.state !== 'done');
   const station = open ?? stations.at(-1);
   if (!station) return null;
   const { title, key } = NEXT[station.key];
   return (
     <Finding
-      title={open ? title : 'Every step of this study is done.'}
+      title={open ? (station.state === 'part' ? begunTitle(station) : title) : ALL_DONE}
       actions={
         <KeyLink href={`/studies/${studyId}/${station.key}`} kind="filled">
           {key}
         </KeyLink>
       }
     >
-      {station.missing ? <p>It waits for {station.missing}.</p> : null}
+      {station.state === 'part' && station.missing ? (
+        <p>The next step waits for {station.missing}.</p>
+      ) : null}
     </Finding>
   );
 }

@@ -30,6 +30,21 @@ function Lines({ lines, none }: { lines: string[]; none: string }) {
   );
 }
 
+/** Predicted above observed, where there is no room for a column each. */
+function Both({ row }: { row: StudyListRow }) {
+  return (
+    <span className="block py-1.5 leading-5">
+      <Lines lines={row.predicted} none={row.ribbon ? 'none in the range' : '–'} />
+      {row.observed.length > 0 ? (
+        <span className="mt-1 block font-semibold">
+          <span className="block text-caption font-normal text-ink2">observed</span>
+          <Lines lines={row.observed} none="" />
+        </span>
+      ) : null}
+    </span>
+  );
+}
+
 function Reached({ row }: { row: StudyListRow }) {
   return (
     <span className="block min-w-28 leading-5">
@@ -62,13 +77,21 @@ const columns: Column<StudyListRow>[] = [
   },
   {
     key: 'predicted',
+    only: 'wide',
     head: 'Predicted onset',
     cell: (row) => <Lines lines={row.predicted} none={row.ribbon ? 'none in the range' : '–'} />,
   },
   {
     key: 'observed',
+    only: 'wide',
     head: 'Observed onset',
     cell: (row) => <Lines lines={row.observed} none="–" />,
+  },
+  {
+    key: 'both',
+    only: 'narrow',
+    head: 'Onset, predicted and observed',
+    cell: (row) => <Both row={row} />,
   },
   { key: 'reached', head: 'How far', cell: (row) => <Reached row={row} /> },
 ];

@@ -120,7 +120,7 @@ function MapNumber(props: {
 }) {
   const { at, name, entry, change, problemAt } = props;
   return (
-    <div className="grid gap-3 tablet:grid-cols-[7rem_8rem_minmax(0,24rem)] tablet:items-start">
+    <div className="grid gap-3 tablet:grid-cols-[5rem_12rem_minmax(0,20rem)] tablet:items-start">
       <span className="font-mono tablet:pt-2">{name}</span>
       <Cell
         at={at}

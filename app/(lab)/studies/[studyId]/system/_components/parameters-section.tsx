@@ -41,7 +41,7 @@ export function ParametersSection({ draft, change, problemAt }: SectionProps) {
           return (
             <li
               key={p.key}
-              className="grid grid-cols-2 gap-3 border-b border-rule pb-3 last:border-b-0 last:pb-0 tablet:grid-cols-[7rem_8rem_8rem_minmax(0,1fr)_auto] desk:grid-cols-[7rem_8rem_8rem_minmax(0,1fr)_minmax(22rem,1fr)_auto] tablet:items-start"
+              className="grid grid-cols-2 gap-3 border-b border-rule pb-3 last:border-b-0 last:pb-0 tablet:grid-cols-[6rem_7rem_7rem_minmax(0,1fr)_auto] desk:grid-cols-[5rem_6.5rem_6rem_minmax(0,1fr)_19rem_auto] tablet:items-start"
             >
               {cell('symbol', 'Symbol')}
               {cell('value', 'Value')}

@@ -31,7 +31,7 @@ export function SpreadCells(props: {
   );
   return (
     <div className="flex min-w-0 flex-col gap-1">
-      <div className="grid min-w-0 grid-cols-[minmax(9.5rem,1fr)_minmax(0,1fr)] gap-2">
+      <div className="grid min-w-0 grid-cols-[9.5rem_minmax(0,1fr)] gap-2">
         <SelectCell
           at={`${at}.kind`}
           label={`Spread of ${of}`}
