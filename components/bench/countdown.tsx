@@ -33,7 +33,9 @@ export function Countdown(props: CountdownProps) {
   const due = at(props.due);
   const seconds = (due - now) / 1000;
   const { text, over } = countdown(seconds);
-  const late = now > at(props.latest);
+  // A visit without leeway has no window to be past; its run counts from when it was made.
+  const leeway = at(props.latest) - due >= NO_LEEWAY_MS || due - at(props.earliest) >= NO_LEEWAY_MS;
+  const late = leeway && now > at(props.latest);
   const words = over
     ? late
       ? `past the window of ${props.what}, due at`
@@ -87,12 +89,12 @@ function momentText(at: number, beside: number, zone: string): string {
 
 type Window = { earliest: number; due: number; latest: number };
 
-/** What still counts as on time: "10 min either side is on time", "until 07:05 is on time". */
+/** What still counts as on time: "10 min either side is on time"; nothing without any leeway. */
 export function windowWords(window: Window, moment: (at: number) => string): string {
   const { earliest, due, latest } = window;
   const before = due - earliest;
   const after = latest - due;
-  if (before < NO_LEEWAY_MS && after < NO_LEEWAY_MS) return 'to the minute';
+  if (before < NO_LEEWAY_MS && after < NO_LEEWAY_MS) return '';
   if (before < NO_LEEWAY_MS) return `until ${moment(latest)} is on time`;
   if (after < NO_LEEWAY_MS) return `from ${moment(earliest)} is on time`;
   if (Math.abs(before - after) < NO_LEEWAY_MS) {

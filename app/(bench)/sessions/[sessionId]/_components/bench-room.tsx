@@ -190,12 +190,16 @@ function nextWords(
 function cautionOf(step: BenchStep | undefined, props: BenchRoomProps): string | undefined {
   if (step?.kind !== 'set dose') return undefined;
   const ceiling = props.ceiling ? `Never above ${props.ceiling}. ` : '';
-  return `${ceiling}The prediction is an estimate; protocol and supervision come first.`;
+  return `${ceiling}The prediction is an estimate; your protocol comes first.`;
 }
 
 function savedWords(props: BenchRoomProps, steps: BenchStep[]): string {
   const last = steps.filter((s) => s.doneAt).at(-1);
-  if (!last?.doneAt) return 'Nothing recorded yet';
+  if (!last?.doneAt) {
+    return props.session.state === 'started'
+      ? 'Saved, the session has begun'
+      : 'Nothing recorded yet';
+  }
   return `Saved, last step at ${clockText(last.doneAt, props.zone)}`;
 }
 
@@ -217,7 +221,7 @@ function fieldOf(
       value,
       onChange,
       step: step_,
-      from: props.run.dose,
+      from: Number(props.run.dose.toPrecision(4)),
       usual: `planned ${props.head.dose}`,
     };
   }

@@ -16,13 +16,17 @@ export function EndPanel(props: BenchRoomProps) {
         {collects ? (
           <KeyLink
             kind="filled"
-            className="min-h-20 px-8 text-bench-key"
+            className="min-h-20! px-8 text-bench-key!"
             href={`/studies/${studyId}/readings?run=${run.id}&session=${session.id}`}
           >
             Upload the readings
           </KeyLink>
         ) : null}
-        <KeyLink className="min-h-20 px-8 text-bench-key" href="/today">
+        <KeyLink
+          kind={collects ? 'outlined' : 'filled'}
+          className="min-h-20! px-8 text-bench-key!"
+          href="/today"
+        >
           Back to today
         </KeyLink>
       </div>

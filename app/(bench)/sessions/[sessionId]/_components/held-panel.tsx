@@ -30,7 +30,7 @@ export function HeldPanel(props: {
       {newest?.mine && left > 0 ? (
         <div className="mt-6">
           <Key
-            className="min-h-20 px-8 text-bench-key"
+            className="min-h-20! px-8 text-bench-key!"
             pending={props.pending}
             onClick={() => props.onSlip(newest.id)}
           >

@@ -6,7 +6,10 @@ import { ActionProblem, Check, TextArea, useAction } from '@/components/forms';
 import { Key } from '@/components/ui';
 import { reportLostAction, writeRemarkAction } from '../actions';
 
-const big = 'min-h-20 px-8 text-bench-key';
+/** Labels, words and ticks in the sizes of the bench. */
+const form =
+  'flex flex-col gap-5 [&_input]:size-8 [&_label]:text-bench [&_textarea]:text-bench-key';
+const big = 'min-h-20! px-8 text-bench-key!';
 
 /** A note, or a deviation from the plan. */
 export function NotePanel(props: { studyId: string; sessionId: string; onClose: () => void }) {
@@ -24,7 +27,7 @@ export function NotePanel(props: { studyId: string; sessionId: string; onClose: 
     });
   }
   return (
-    <form onSubmit={submit} className="flex flex-col gap-5">
+    <form onSubmit={submit} className={form}>
       <TextArea id="text" label="What you saw" rows={6} required autoFocus />
       <Check id="deviation" label="It did not go as planned (a deviation)" value="1" />
       <ActionProblem problem={problem} />
@@ -46,7 +49,7 @@ const REASONS = ['rig not free', 'preparation not ready', 'nothing could be draw
 export function SkipPanel(props: { onSkip: (why: string) => void; onClose: () => void }) {
   const [words, setWords] = useState('');
   return (
-    <div className="flex flex-col gap-5">
+    <div className={form}>
       <h2 className="text-instruction font-medium">Skipped because …</h2>
       <div className="grid gap-4 tablet:grid-cols-2">
         {REASONS.map((why) => (
@@ -83,7 +86,7 @@ export function LostPanel(props: { sessionId: string; onClose: () => void }) {
   const { run, pending, problem } = useAction(reportLostAction, { onDone: props.onClose });
   const [reason, setReason] = useState('');
   return (
-    <div className="flex flex-col gap-5">
+    <div className={form}>
       <h2 className="text-instruction font-medium">Is the preparation lost?</h2>
       <p className="text-bench">
         Its record up to now is kept. Its later runs and sessions are taken off the calendar and the
