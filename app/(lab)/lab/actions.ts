@@ -1,6 +1,5 @@
 'use server';
 
-import { revalidatePath } from 'next/cache';
 import {
   absenceForm,
   hoursForm,
@@ -9,20 +8,12 @@ import {
   removeForm,
   rigForm,
 } from '@/lib/contracts/forms/lab';
-import { type ActionContext, labAction } from '@/lib/server/action';
+import { labAction } from '@/lib/server/action';
 import { addPerson } from '@/lib/server/lab/add-person';
 import { changeMembership } from '@/lib/server/lab/change-membership';
 import { addAbsence, addHours, removeAbsence, removeHours } from '@/lib/server/lab/hours';
 import { saveRig } from '@/lib/server/lab/save-rig';
-
-/** Every page shows the lab's day, so every page is drawn anew. */
-const shown =
-  <I, T>(handle: (context: ActionContext, input: I) => Promise<T>) =>
-  async (context: ActionContext, input: I): Promise<T> => {
-    const done = await handle(context, input);
-    revalidatePath('/', 'layout');
-    return done;
-  };
+import { shown } from '@/lib/server/shown';
 
 export const addPersonAction = labAction({
   action: 'manage people',

@@ -1,24 +1,16 @@
 'use server';
 
-import { revalidatePath } from 'next/cache';
 import { z } from 'zod';
 import { lostForm, remarkForm, startForm, undoForm, visitForm } from '@/lib/contracts/forms/bench';
-import { type ActionContext, labAction } from '@/lib/server/action';
+import { labAction } from '@/lib/server/action';
 import { recordVisit } from '@/lib/server/bench/record-visit';
 import { reportLost } from '@/lib/server/bench/report-lost';
 import { startSession } from '@/lib/server/bench/start-session';
 import { undoVisit } from '@/lib/server/bench/undo-visit';
 import { writeRemark } from '@/lib/server/bench/write-remark';
+import { shown } from '@/lib/server/shown';
 import { pressStop } from '@/lib/server/stops/press-stop';
 import { takeBackStop } from '@/lib/server/stops/take-back';
-
-const shown =
-  <I, T>(handle: (context: ActionContext, input: I) => Promise<T>) =>
-  async (context: ActionContext, input: I): Promise<T> => {
-    const done = await handle(context, input);
-    revalidatePath('/', 'layout');
-    return done;
-  };
 
 export const startSessionAction = labAction({
   action: 'record session',
