@@ -101,6 +101,33 @@ const isDuplicate = (error: unknown): boolean => {
 
 type Parsed = { target: Target; imported: ImportedFile; sha256: string };
 
+/** The row of the file itself; a second one of the same content waits here, then collides. */
+async function insertUpload(
+  tx: Transaction,
+  { member, now }: Context,
+  input: UploadInput,
+  { target, sha256 }: Parsed,
+): Promise<string> {
+  const uploadId = uuid();
+  await tx.insert(upload).values({
+    id: uploadId,
+    labId: member.labId,
+    studyId: target.study.id,
+    runId: target.run.id,
+    sessionId: input.sessionId,
+    fileName: input.fileName,
+    bytes: input.bytes.byteLength,
+    sha256,
+    mapping: input.mapping,
+    rowsKept: 0,
+    rowsRefused: 0,
+    problems: [],
+    byId: member.userId,
+    createdAt: now,
+  });
+  return uploadId;
+}
+
 async function store(
   tx: Transaction,
   context: Context,
@@ -116,24 +143,7 @@ async function store(
       mend: 'Reload the page and upload again.',
     });
   }
-  const uploadId = uuid();
-  const row = {
-    id: uploadId,
-    labId,
-    studyId: target.study.id,
-    runId: target.run.id,
-    sessionId: input.sessionId,
-    fileName: input.fileName,
-    bytes: input.bytes.byteLength,
-    sha256,
-    mapping: input.mapping,
-    rowsKept: 0,
-    rowsRefused: 0,
-    problems: [],
-    byId: member.userId,
-    createdAt: now,
-  };
-  await tx.insert(upload).values(row);
+  const uploadId = await insertUpload(tx, context, input, { target, imported, sha256 });
   const inserted = await insertReadings(tx, {
     labId,
     runId: target.run.id,

@@ -79,15 +79,7 @@ export default async function OnsetPage({ params }: { params: Promise<{ studyId:
         replans={may(member, 'write series') && approved !== null}
         at={stampText(estimate.createdAt, zone)}
       />
-      {view.notes.length > 0 ? (
-        <Plate title="What to know about it" className="mt-6">
-          <ul className="flex list-disc flex-col gap-2 pl-5">
-            {view.notes.map((note) => (
-              <li key={note}>{note}</li>
-            ))}
-          </ul>
-        </Plate>
-      ) : null}
+      <Notes notes={view.notes} />
       {view.onsets.length > 0 ? <MethodTables onsets={view.onsets} unit={ribbon.unit} /> : null}
       <History
         from={ribbon.from}
@@ -106,6 +98,19 @@ export default async function OnsetPage({ params }: { params: Promise<{ studyId:
         <Caution />
       </div>
     </>
+  );
+}
+
+function Notes({ notes }: { notes: string[] }) {
+  if (notes.length === 0) return null;
+  return (
+    <Plate title="What to know about it" className="mt-6">
+      <ul className="flex list-disc flex-col gap-2 pl-5">
+        {notes.map((note) => (
+          <li key={note}>{note}</li>
+        ))}
+      </ul>
+    </Plate>
   );
 }
 
