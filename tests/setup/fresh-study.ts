@@ -29,11 +29,14 @@ const worked = new Map<string, unknown>();
 
 function answerOf({ kind, input }: Pick<typeof job.$inferSelect, 'kind' | 'input'>): unknown {
   const { systemVersionId: _s, studyId: _t, predictionId: _p, ...asked } = input;
-  const key = kind === 'lay-out' ? null : `${kind}:${JSON.stringify(asked)}`;
-  const known = key === null ? undefined : worked.get(key);
-  const answer = known ?? JSON.parse(JSON.stringify(workOf[kind](input, () => {})));
-  if (key !== null) worked.set(key, answer);
-  return answer;
+  const answer = (of: unknown) => JSON.parse(JSON.stringify(workOf[kind](of, () => {})));
+  if (kind === 'lay-out') {
+    // What becomes of a plan is asked here, not how good it is: little improving is enough.
+    return answer({ ...input, request: { ...(input.request as object), effort: 10 } });
+  }
+  const key = `${kind}:${JSON.stringify(asked)}`;
+  if (!worked.has(key)) worked.set(key, answer(input));
+  return worked.get(key);
 }
 
 /** Works a queued job here and stores its answer, as the worker would. */
