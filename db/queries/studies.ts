@@ -233,7 +233,7 @@ async function countEvidence(conn: Conn, { labId, studyIds }: Wanted, counts: Co
   }
 }
 
-/** The verdict that counts of every judged run: the newest row of each. */
+/** The verdict that counts of every judged run: what somebody said of it, else the newest computed. */
 export async function newestVerdicts(conn: Conn, { labId, studyIds }: Wanted) {
   if (studyIds.length === 0) return [];
   const rows = await conn
@@ -248,7 +248,7 @@ export async function newestVerdicts(conn: Conn, { labId, studyIds }: Wanted) {
     .from(runVerdict)
     .innerJoin(run, and(eq(run.id, runVerdict.runId), eq(run.labId, runVerdict.labId)))
     .where(and(eq(runVerdict.labId, labId), inArray(run.studyId, studyIds)))
-    .orderBy(runVerdict.createdAt, runVerdict.id);
+    .orderBy(sql`${runVerdict.kind} <> 'computed'`, runVerdict.createdAt, runVerdict.id);
   return [...new Map(rows.map((row) => [row.runId, row])).values()];
 }
 

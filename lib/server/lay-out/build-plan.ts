@@ -104,6 +104,21 @@ async function busyTimes(
   ];
 }
 
+const GRID_MS = 5 * 60_000;
+
+/**
+ * A climb goes on with its living preparations, so its next run waits for the one that is under way,
+ * also on a rig that could hold both.
+ */
+async function afterRunning(conn: Conn, ask: Ask): Promise<Date> {
+  if (ask.version.scheme !== 'climb') return ask.notBefore;
+  const held = await heldBookings(conn, { labId: ask.member.labId, from: ask.notBefore });
+  const ends = held
+    .filter((b) => b.studyId === ask.study.id && !['planned', 'tentative'].includes(b.runState))
+    .map((b) => Math.ceil(b.to.getTime() / GRID_MS) * GRID_MS);
+  return new Date(Math.max(ask.notBefore.getTime(), ...ends));
+}
+
 /** Everything that the lay-out job needs, read in one go. */
 export async function buildLayOutPlan(conn: Conn, ask: Ask): Promise<LayOutPlan> {
   const { member, study, version, levels } = ask;
@@ -167,7 +182,7 @@ export async function buildLayOutPlan(conn: Conn, ask: Ask): Promise<LayOutPlan>
     runs,
     request: {
       timeZone: member.lab.timeZone,
-      notBefore: ask.notBefore.toISOString(),
+      notBefore: (await afterRunning(conn, ask)).toISOString(),
       notAfter: ask.notAfter.toISOString(),
       bookings: bookingsOf(runs, {
         scheme: version.scheme,
