@@ -85,12 +85,12 @@ export function BenchRoom(props: BenchRoomProps) {
 
   // A stop pressed here is shown here, even where this session itself was over already.
   const held = session.state === 'suspended' || props.stops.some((s) => s.id === stopped);
-  const field = step && !held ? fieldOf(step, props, value, setValue) : undefined;
+  const live = props.records && !held && step !== undefined && session.state !== 'cancelled';
+  const field = step && live ? fieldOf(step, props, value, setValue) : undefined;
   const wrong =
     field !== undefined && value.trim() !== '' && !Number.isFinite(Number(value.replace(',', '.')));
   const mustFill = step?.kind === 'set dose' && value.trim() === '';
   const panel = panelOf(props, { open, close, act, step, held, slip });
-  const live = props.records && !held && step !== undefined && session.state !== 'cancelled';
   return (
     <BenchCard
       rule={{
