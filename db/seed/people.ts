@@ -54,7 +54,7 @@ export const demoPeople: {
     skills: ['flow rig', 'chemostat', 'plate reader'],
     hours: [
       { rrule: 'FREQ=WEEKLY;BYDAY=MO,TU,WE,TH,FR', from: '11:00', to: '20:00' },
-      { rrule: 'FREQ=WEEKLY;INTERVAL=2;BYDAY=SA', from: '09:00', to: '14:00' },
+      { rrule: 'FREQ=WEEKLY;BYDAY=SA', from: '09:00', to: '14:00' },
     ],
     maxMinutesPerDay: 420,
   },

@@ -18,7 +18,7 @@ export function prepareDataFolder(folder) {
       folder,
       join(folder, 'logs'),
       join(folder, 'mail'),
-      join(folder, 'files'),
+      join(folder, 'uploads'),
     ]) {
       mkdirSync(path, { recursive: true, mode: 0o700 });
     }

@@ -73,7 +73,7 @@ const rig = {
   recordsItself: false,
   retired: false,
 };
-const hours = { days: ['MO' as const], everyWeeks: 1, from: '09:00', to: '17:00' };
+const hours = { days: ['MO' as const], from: '09:00', to: '17:00' };
 const away = { from: AT, to: PAST, reason: 'away' };
 const seriesRef = (i: Ids) => ({
   studyId: i.studyId,

@@ -105,11 +105,11 @@ describe('hours and absences', () => {
     const id = uuid();
     const { userId } = lab.people.technician;
     const days: ('MO' | 'SA')[] = ['MO', 'SA'];
-    const hours = { id, userId, rigId: null, days, everyWeeks: 2, from: '09:00', to: '14:00' };
+    const hours = { id, userId, rigId: null, days, from: '09:00', to: '14:00' };
     await addHours(head(), hours);
     await addHours(head(), hours);
     const rows = await db.select().from(workingHours).where(eq(workingHours.id, id));
-    expect(rows.map((r) => r.rrule)).toEqual(['FREQ=WEEKLY;INTERVAL=2;BYDAY=MO,SA']);
+    expect(rows.map((r) => r.rrule)).toEqual(['FREQ=WEEKLY;BYDAY=MO,SA']);
     await removeHours(head(), { id });
     await expect(removeHours(head(), { id })).rejects.toMatchObject({ code: 'not-found' });
   });

@@ -47,7 +47,6 @@ export const hoursForm = z
     userId: id.nullable(),
     rigId: id.nullable(),
     days: z.array(z.enum(weekdays)).min(1, 'choose at least one day'),
-    everyWeeks: z.number().int().min(1).max(12),
     from: clockTime,
     to: clockTime,
   })

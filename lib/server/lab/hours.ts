@@ -28,8 +28,7 @@ async function assertOwn(
 /** Adds working hours of a person, or opening hours of a rig, as a weekly recurrence. */
 export async function addHours({ db, member }: ActionContext, input: z.output<typeof hoursForm>) {
   const { labId } = member;
-  const interval = input.everyWeeks === 1 ? '' : `INTERVAL=${input.everyWeeks};`;
-  const rrule = `FREQ=WEEKLY;${interval}BYDAY=${input.days.join(',')}`;
+  const rrule = `FREQ=WEEKLY;BYDAY=${input.days.join(',')}`;
   return db.transaction(async (tx) => {
     await assertOwn(tx, { labId, ...input });
     const { id, userId, rigId, from, to } = input;

@@ -2,14 +2,7 @@
 
 import { type FormEvent, useState } from 'react';
 import { v7 as uuid } from 'uuid';
-import {
-  ActionProblem,
-  Check,
-  FieldGroup,
-  NumberField,
-  TextField,
-  useAction,
-} from '@/components/forms';
+import { ActionProblem, Check, FieldGroup, TextField, useAction } from '@/components/forms';
 import { Key, Plate } from '@/components/ui';
 import { weekdays } from '@/lib/contracts/forms/lab';
 import { addHoursAction, removeHoursAction } from '../../actions';
@@ -69,7 +62,6 @@ function NewHours({ owner, onDone }: { owner: Owner; onDone: () => void }) {
       userId: owner.userId,
       rigId: owner.rigId,
       days: weekdays.filter((d) => form.get(`${d}-${key}`) !== null),
-      everyWeeks: Number(form.get(`weeks-${key}`)),
       from: String(form.get(`from-${key}`)),
       to: String(form.get(`to-${key}`)),
     });
@@ -85,15 +77,6 @@ function NewHours({ owner, onDone }: { owner: Owner; onDone: () => void }) {
       </FieldGroup>
       <TextField id={`from-${key}`} label="From" type="time" required defaultValue="08:00" />
       <TextField id={`to-${key}`} label="Until" type="time" required defaultValue="17:00" />
-      <NumberField
-        id={`weeks-${key}`}
-        label="Every so many weeks"
-        min={1}
-        max={12}
-        step={1}
-        required
-        defaultValue={1}
-      />
       <Key type="submit" kind="filled" pending={pending}>
         Add
       </Key>
