@@ -10,13 +10,20 @@ import type { OpenSpan } from '@/components/calendar/open-hours';
 import { SessionList } from '@/components/calendar/session-list';
 import type { CalendarPerson, CalendarSession } from '@/components/calendar/types';
 import { ActionProblem, useAction } from '@/components/forms';
-import { EmptyState, KeyLink } from '@/components/ui';
+import { EmptyState, KeyLink, LoadingRibbon } from '@/components/ui';
 import { moveSessionAction } from '../actions';
 import type { ShownView } from '../range';
 
 const SessionCalendar = dynamic(
   () => import('@/components/calendar/session-calendar').then((m) => m.SessionCalendar),
-  { ssr: false, loading: () => <div className="h-[860px] border border-rule bg-plate" /> },
+  {
+    ssr: false,
+    loading: () => (
+      <div className="h-[860px] border border-rule bg-plate py-4">
+        <LoadingRibbon size="card" what="drawing the calendar" />
+      </div>
+    ),
+  },
 );
 
 type Props = {

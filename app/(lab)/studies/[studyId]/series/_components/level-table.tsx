@@ -50,7 +50,11 @@ export function LevelTable({ levels, units }: { levels: Level[]; units: Units })
       kind: 'figure',
       cell: (l) => durationText(l.intervalMinutes),
     },
-    { key: 'notes', head: 'Notes', cell: (l) => l.notes.join(' ') },
+    {
+      key: 'notes',
+      head: 'Notes',
+      cell: (l) => <span className="block min-w-52">{l.notes.join(' ')}</span>,
+    },
   ];
   return (
     <DataTable

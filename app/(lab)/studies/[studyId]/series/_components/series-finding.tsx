@@ -70,7 +70,7 @@ export function SeriesFinding(props: {
     >
       <p className="mb-2">
         {climb
-          ? `Each preparation climbs through all levels, ${version.order}: each takes ${durationText(hours(levels, true))} of settling and recording.`
+          ? `Each preparation climbs through all levels, ${version.order}, and takes ${durationText(hours(levels, true))} of settling and recording.`
           : `A fresh preparation for each level, ${version.order}: the longest run takes ${durationText(hours(levels, false))}.`}
       </p>
       <Gain version={version} units={units} />
