@@ -3,7 +3,7 @@
 import { ticksOf } from '@/components/ribbon/scale';
 import { figure, unitText } from '@/lib/format';
 import { axisName, axisOver } from './axis';
-import { ChartFrame, FOOT, PAD } from './chart-frame';
+import { ChartFrame, FOOT, PAD, type Places } from './chart-frame';
 import {
   Name,
   type Observation,
@@ -12,6 +12,7 @@ import {
   PredictionLines,
   predictionPieces,
 } from './layers';
+import { placeAtRight } from './place-names';
 
 export type GrowthChartProps = {
   from: number;
@@ -60,12 +61,7 @@ export function GrowthChart(props: GrowthChartProps) {
           />
           <PredictionLines pieces={pieces} />
           <OnsetLines values={props.onsets} places={places} base={base} />
-          <Name x={width - PAD} y={places.y(0) - 6} end>
-            grows
-          </Name>
-          <Name x={width - PAD} y={places.y(0) + 16} end>
-            dies away
-          </Name>
+          <SideNames {...props} pieces={pieces} places={places} base={base} width={width} />
           <ObservationMarks
             observations={observations}
             places={places}
@@ -77,6 +73,42 @@ export function GrowthChart(props: GrowthChartProps) {
       )}
     </ChartFrame>
   );
+}
+
+type SideNamesProps = Pick<GrowthChartProps, 'onsets' | 'observations'> & {
+  pieces: ReturnType<typeof predictionPieces>;
+  places: Places;
+  base: number;
+  width: number;
+};
+
+/** What a rate above and below zero means, written beside the zero line clear of curve and marks. */
+function SideNames({ onsets, observations = [], pieces, places, base, width }: SideNamesProps) {
+  const curve = pieces.flatMap((piece) =>
+    piece.points.map((p) => ({ x: places.x(p.x), y: places.y(p.y) })),
+  );
+  const upright = (value: number, top: number, bottom: number) => {
+    const x = places.x(value);
+    return { left: x - 1, right: x + 1, top, bottom };
+  };
+  const taken = [
+    ...onsets.map((value) => upright(value, 0, base)),
+    ...observations.flatMap(({ control, measure }) =>
+      measure ? [upright(control, places.y(measure.high), places.y(measure.low))] : [],
+    ),
+  ];
+  const names = [
+    { text: 'grows', y: places.y(0) - 8 },
+    { text: 'dies away', y: places.y(0) + 18 },
+  ];
+  return names.map(({ text, y }) => {
+    const x = placeAtRight(text, y, curve, taken, width - PAD);
+    return x === null ? null : (
+      <Name key={text} x={x} y={y} end>
+        {text}
+      </Name>
+    );
+  });
 }
 
 function sentence(props: GrowthChartProps): string {

@@ -68,6 +68,39 @@ function along(points: readonly { x: number; y: number }[]): { x: number; y: num
   });
 }
 
+/** Whether a text written at a place would lie over a drawn line or come too close to what is there. */
+function free(
+  box: Box,
+  drawn: readonly { x: number; y: number }[],
+  taken: readonly Box[],
+): boolean {
+  const wide = {
+    left: box.left - CLEAR,
+    right: box.right + CLEAR,
+    top: box.top - CLEAR,
+    bottom: box.bottom + CLEAR,
+  };
+  if (box.top < 0 || taken.some((other) => overlap(wide, other))) return false;
+  return !drawn.some(
+    (p) => p.x > wide.left && p.x < wide.right && p.y > wide.top && p.y < wide.bottom,
+  );
+}
+
+/** The right end of a text at one height, as far to the right as curve and `taken` allow; null without room. */
+export function placeAtRight(
+  text: string,
+  y: number,
+  curve: readonly { x: number; y: number }[],
+  taken: readonly Box[],
+  right: number,
+): number | null {
+  const drawn = along(curve);
+  for (let x = right; x - text.length * LETTER > 16; x -= CURVE_STEP) {
+    if (free(boxOf(text, x, y, true), drawn, taken)) return x;
+  }
+  return null;
+}
+
 /**
  * Where the name of a curve is written: as near as may be to the right of `from`, clear of the curve
  * and of `taken`; null where there is no room.
@@ -83,17 +116,7 @@ export function placeCurveName(
   for (let x = chart.from; x <= last; x += CURVE_STEP) {
     for (const height of CURVE_HEIGHTS) {
       const box = boxOf(text, x, chart.base - height, false);
-      const wide = {
-        left: box.left - CLEAR,
-        right: box.right + CLEAR,
-        top: box.top - CLEAR,
-        bottom: box.bottom + CLEAR,
-      };
-      if (box.top < 0 || taken.some((other) => overlap(wide, other))) continue;
-      const crossed = drawn.some(
-        (p) => p.x > wide.left && p.x < wide.right && p.y > wide.top && p.y < wide.bottom,
-      );
-      if (!crossed) return { x, y: chart.base - height };
+      if (free(box, drawn, taken)) return { x, y: chart.base - height };
     }
   }
   return null;

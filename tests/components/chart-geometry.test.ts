@@ -6,7 +6,7 @@ import {
   dodge,
   piecesByStability,
 } from '@/components/charts/axis';
-import { placeCurveName, placeNames } from '@/components/charts/place-names';
+import { placeAtRight, placeCurveName, placeNames } from '@/components/charts/place-names';
 
 describe('axes', () => {
   test('from zero: ticks reach the largest value and the domain leaves room above', () => {
@@ -74,6 +74,19 @@ describe('curves', () => {
   test('are interrupted where there is no value', () => {
     const pieces = piecesByStability([0, 1, 2, 3], [5, null, 7, 8], undefined);
     expect(pieces.map((p) => p.points.length)).toEqual([1, 2]);
+  });
+});
+
+describe('a word beside the zero line', () => {
+  test('stands at the right end, and moves left of a curve that passes there', () => {
+    const rising = [
+      { x: 300, y: 400 },
+      { x: 400, y: 0 },
+    ];
+    expect(placeAtRight('dies away', 100, [], [], 400)).toBe(400);
+    expect(placeAtRight('dies away', 100, rising, [], 400)).toBeLessThan(380);
+    const full = { left: 0, right: 400, top: 0, bottom: 400 };
+    expect(placeAtRight('dies away', 100, [], [full], 400)).toBeNull();
   });
 });
 

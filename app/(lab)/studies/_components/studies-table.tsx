@@ -5,13 +5,17 @@ import type { StudyListRow } from './row-of';
 
 function Title({ row }: { row: StudyListRow }) {
   return (
-    <span className="block min-w-44 py-1.5 leading-5">
+    <span className="block min-w-40 py-1.5 desk:min-w-44 leading-5">
       <Link href={`/studies/${row.id}`} className="underline-offset-4 hover:underline">
         {row.title}
       </Link>
       <span className="block text-caption font-normal text-ink2">
-        <span className="whitespace-nowrap">{row.perturbs}</span>
-        {row.simulated ? <span className="whitespace-nowrap">; simulated readings</span> : null}
+        <span className="whitespace-nowrap">
+          {row.perturbs}
+          {row.simulated ? ';' : null}
+        </span>
+        {row.simulated ? ' ' : null}
+        {row.simulated ? <span className="whitespace-nowrap">simulated readings</span> : null}
       </span>
     </span>
   );

@@ -75,7 +75,7 @@ function Working(props: WorkingProps) {
     <Plate className="mb-6 w-full">
       <LoadingRibbon
         size={compact ? 'card' : 'page'}
-        what="draws"
+        what={total > 0 ? 'draws' : 'waiting'}
         done={total > 0 ? done : undefined}
         total={total || undefined}
       />
