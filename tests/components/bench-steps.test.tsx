@@ -45,6 +45,11 @@ describe('due times of a session', () => {
     const [, late] = stepsOf([collect], { ...facts, startsAt: later(30) });
     expect(late?.due).toBe(later(21).toISOString());
   });
+  test('the setting is due at its appointment, whatever its window says', () => {
+    const set = visit({ id: 'a', kind: 'set dose', atMinutes: 0, latest: zero });
+    const [, step] = stepsOf([set], { ...facts, startsAt: later(1) });
+    expect(step?.due).toBe(later(1).toISOString());
+  });
   test('later visits keep their own minute, though never before the appointment', () => {
     const visits = [
       visit({ id: 'b', kind: 'sample', atMinutes: 120, earliest: later(0) }),

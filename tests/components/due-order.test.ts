@@ -28,9 +28,10 @@ describe('the lists of Today', () => {
       row('held', '01T14:00', 'suspended'),
       row('late', '01T12:00', 'planned'),
       row('after midnight there', '01T23:10', 'planned'),
+      row('begun early', '02T06:00', 'started'),
     ];
     const { due, coming, done } = sortDue(rows, day);
-    expect(due.map((r) => r.id)).toEqual(['late', 'begun', 'held', 'tonight']);
+    expect(due.map((r) => r.id)).toEqual(['late', 'begun', 'held', 'tonight', 'begun early']);
     expect(coming.map((r) => r.id)).toEqual(['after midnight there']);
     expect(done.map((r) => r.id)).toEqual(['done']);
   });

@@ -64,12 +64,14 @@ function extra(label: string): string {
 
 /**
  * When a visit is due: its first one at the appointment, later ones at their own minute of the run,
- * though never before the appointment; always inside the visit's own window.
+ * though never before the appointment; inside the visit's own window. A setting has its run's times
+ * move with it, so nothing holds it to a window.
  */
 function dueAt(v: StepVisit, facts: Facts, first: boolean): string {
   const own = facts.zero.getTime() + v.atMinutes * 60_000;
   const begins = facts.startsAt.getTime();
   const due = first ? begins : Math.max(own, begins);
+  if (v.kind === 'set dose') return new Date(due).toISOString();
   const held = Math.min(Math.max(due, v.earliest.getTime()), v.latest.getTime());
   return new Date(held).toISOString();
 }

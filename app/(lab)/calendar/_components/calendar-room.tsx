@@ -11,6 +11,7 @@ import { SessionList } from '@/components/calendar/session-list';
 import type { CalendarPerson, CalendarSession } from '@/components/calendar/types';
 import { ActionProblem, useAction } from '@/components/forms';
 import { EmptyState, KeyLink, LoadingRibbon } from '@/components/ui';
+import { ScrollRegion } from '@/components/ui/scroll-region';
 import { moveSessionAction } from '../actions';
 import type { ShownView } from '../range';
 
@@ -120,15 +121,19 @@ export function CalendarRoom(props: Props) {
           onMove={move}
         />
       ) : (
-        <SessionCalendar
-          sessions={sessions}
-          zone={zone}
-          view={view}
-          open={props.open}
-          date={DateTime.fromISO(date, { zone }).plus({ hours: 12 }).toISO() ?? date}
-          onMove={move}
-          onOpen={(s) => router.push(`/sessions/${s.id}`)}
-        />
+        <ScrollRegion label="Sessions by time">
+          <div className={view === 'day' ? undefined : 'min-w-[700px]'}>
+            <SessionCalendar
+              sessions={sessions}
+              zone={zone}
+              view={view}
+              open={props.open}
+              date={DateTime.fromISO(date, { zone }).plus({ hours: 12 }).toISO() ?? date}
+              onMove={move}
+              onOpen={(s) => router.push(`/sessions/${s.id}`)}
+            />
+          </div>
+        </ScrollRegion>
       )}
     </div>
   );

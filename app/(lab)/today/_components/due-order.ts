@@ -9,7 +9,7 @@ export function isOverdue(row: Timed, now: string): boolean {
 const open = (row: Timed) => row.state !== 'done' && row.state !== 'cancelled';
 
 /**
- * The day in three lists: what is due (overdue first, then by time), what comes on later days, what
+ * The day in three lists: what is due (overdue first, then by time; all that has begun), what comes on later days, what
  * is done today. `dayEnd` is the end of the lab's day.
  */
 export function sortDue<Row extends Timed>(
@@ -17,10 +17,10 @@ export function sortDue<Row extends Timed>(
   of: { now: string; dayStart: string; dayEnd: string },
 ): { due: Row[]; coming: Row[]; done: Row[] } {
   const byTime = [...rows].sort((a, b) => a.from.localeCompare(b.from));
-  const due = byTime.filter((r) => open(r) && r.from < of.dayEnd);
+  const due = byTime.filter((r) => open(r) && (r.from < of.dayEnd || r.state === 'started'));
   return {
     due: [...due.filter((r) => isOverdue(r, of.now)), ...due.filter((r) => !isOverdue(r, of.now))],
-    coming: byTime.filter((r) => open(r) && r.from >= of.dayEnd),
+    coming: byTime.filter((r) => open(r) && !due.includes(r)),
     done: byTime.filter((r) => r.state === 'done' && r.to > of.dayStart && r.from < of.dayEnd),
   };
 }
