@@ -1,10 +1,15 @@
 import { eq } from 'drizzle-orm';
 import { v7 as uuid } from 'uuid';
 import type { Db } from '@/db/client';
+import { latestEstimate } from '@/db/queries/estimates';
+import { latestPrediction } from '@/db/queries/predictions';
 import { seriesVersions } from '@/db/queries/series';
 import { insertSystemVersion } from '@/db/queries/systems';
 import { job, membership, rig, run, study, user, workingHours } from '@/db/schema';
 import type { Control, SystemModel } from '@/lib/contracts';
+import { askEvidence } from '@/lib/server/evidence/ask-evidence';
+import { onsetView } from '@/lib/server/evidence/onset-view';
+import { runRows } from '@/lib/server/evidence/run-rows';
 import { storeOf } from '@/lib/server/jobs/stores';
 import { workOf } from '@/lib/server/jobs/works';
 import { askLayOut } from '@/lib/server/lay-out/ask-lay-out';
@@ -162,4 +167,21 @@ export async function setRun(
       deliveredDose: of.dose,
     })
     .where(eq(run.id, of.runId));
+}
+
+export async function estimateNow(db: Db, lab: EvidenceLab, studyId: string) {
+  const asked = await askEvidence(db, {
+    labId: lab.labId,
+    studyId,
+    askedBy: lab.technician.userId,
+  });
+  await workJob(db, asked!.jobId);
+  const of = { labId: lab.labId, studyId };
+  const [estimate, prediction, rows] = await Promise.all([
+    latestEstimate(db, of),
+    latestPrediction(db, of),
+    runRows(db, of),
+  ]);
+  const view = onsetView(estimate!, { answer: prediction!.answer, unit: '1/d', rows });
+  return { estimate: estimate!, prediction: prediction!, rows, view };
 }

@@ -4,15 +4,12 @@ import { join } from 'node:path';
 import { eq } from 'drizzle-orm';
 import { v7 as uuid } from 'uuid';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
-import { recordOfRun } from '@/db/queries/records';
 import { lastMapping, uploadById, uploadList } from '@/db/queries/uploads';
 import { auditEvent, job, reading, runVerdict, upload } from '@/db/schema';
 import { type UploadMapping, uploadMapping } from '@/lib/contracts/forms/readings';
 import { env } from '@/lib/server/env';
 import { readKeptFile } from '@/lib/server/files';
 import { acceptUpload } from '@/lib/server/uploads/accept-upload';
-import { MOST_BYTES, readMultipart } from '@/lib/server/uploads/read-multipart';
-import { uploadInput } from '@/lib/server/uploads/upload-input';
 import {
   contextOf,
   type EvidenceLab,
@@ -274,110 +271,6 @@ describe('a file that cannot be taken', () => {
   });
 });
 
-describe('the form of an upload', () => {
-  const request = (form: FormData, headers: Record<string, string> = {}) => {
-    const built = new Request('http://127.0.0.1/', { method: 'POST', body: form });
-    const all = new Headers(built.headers);
-    for (const [key, value] of Object.entries(headers)) all.set(key, value);
-    return new Request('http://127.0.0.1/', {
-      method: 'POST',
-      body: built.body,
-      headers: all,
-      duplex: 'half',
-    } as RequestInit);
-  };
-  const form = (bytes: BlobPart, name = 'a.csv') => {
-    const fields = new FormData();
-    fields.set('file', new File([bytes], name));
-    fields.set('runId', study.runs[0]!.id);
-    fields.set('mapping', JSON.stringify(plain));
-    return fields;
-  };
-
-  test('is read with its file and its declarations', async () => {
-    const read = await readMultipart(request(form('time,x\n1,2\n', '../../etc/a\u0007.csv')));
-    expect(await uploadInput(study.studyId, read)).toMatchObject({
-      runId: study.runs[0]!.id,
-      sessionId: null,
-      fileName: 'a.csv',
-      mapping: plain,
-    });
-  });
-
-  test('that says it is too long is refused unread', async () => {
-    let pulled = 0;
-    const body = new ReadableStream<Uint8Array>(
-      {
-        pull(controller) {
-          pulled += 1;
-          controller.enqueue(new Uint8Array(65_536));
-        },
-      },
-      { highWaterMark: 0 },
-    );
-    const long = new Request('http://127.0.0.1/', {
-      method: 'POST',
-      body,
-      duplex: 'half',
-      headers: {
-        'content-type': 'multipart/form-data; boundary=x',
-        'content-length': String(60 * 1024 * 1024),
-      },
-    } as RequestInit);
-    await expect(readMultipart(long)).rejects.toMatchObject({ code: 'too-large' });
-    expect(pulled).toBe(0);
-  });
-
-  test('that does not say so is read no further than the limit', async () => {
-    let sent = 0;
-    const head = '--x\r\ncontent-disposition: form-data; name="file"; filename="a.csv"\r\n\r\n';
-    const body = new ReadableStream<Uint8Array>({
-      pull(controller) {
-        controller.enqueue(
-          sent === 0 ? new TextEncoder().encode(head) : new Uint8Array(65_536).fill(49),
-        );
-        sent += 65_536;
-      },
-    });
-    const endless = new Request('http://127.0.0.1/', {
-      method: 'POST',
-      body,
-      duplex: 'half',
-      headers: { 'content-type': 'multipart/form-data; boundary=x' },
-    } as RequestInit);
-    await expect(readMultipart(endless, 1_000_000)).rejects.toMatchObject({ code: 'too-large' });
-    expect(sent).toBeLessThan(3_000_000);
-    expect(MOST_BYTES).toBe(50 * 1024 * 1024);
-  });
-
-  test('that is cut off, or is no form, or lacks its parts is refused with words', async () => {
-    const cut = new Request('http://127.0.0.1/', {
-      method: 'POST',
-      body: '--x\r\ncontent-disposition: form-data; name="file"; filename="a',
-      headers: { 'content-type': 'multipart/form-data; boundary=x' },
-    });
-    await expect(readMultipart(cut)).rejects.toMatchObject({ code: 'invalid-input' });
-    const text = new Request('http://127.0.0.1/', { method: 'POST', body: 'x' });
-    await expect(readMultipart(text)).rejects.toMatchObject({ code: 'invalid-input' });
-    const bare = new FormData();
-    bare.set('runId', uuid());
-    await expect(uploadInput(study.studyId, bare)).rejects.toMatchObject({
-      detail: { at: 'file' },
-    });
-    const empty = form('');
-    await expect(uploadInput(study.studyId, empty)).rejects.toMatchObject({
-      detail: { at: 'file' },
-    });
-    const odd = form('time,x\n1,2\n');
-    odd.set('mapping', '{');
-    await expect(uploadInput(study.studyId, odd)).rejects.toMatchObject({
-      detail: { at: 'mapping' },
-    });
-    odd.set('mapping', '{"delimiter":","}');
-    await expect(uploadInput(study.studyId, odd)).rejects.toThrow();
-  });
-});
-
 describe('what is known of uploads', () => {
   test('is listed to this lab alone, and proposes how the next file is read', async () => {
     const list = await uploadList(db, { labId: lab.labId, studyId: study.studyId });
@@ -391,29 +284,5 @@ describe('what is known of uploads', () => {
     expect(uploadMapping.parse(await lastMapping(db, own))).toBeTruthy();
     expect(uploadMapping.parse(await lastMapping(db, { ...own, studyId: uuid() }))).toBeTruthy();
     expect(await lastMapping(db, { ...own, studyId: uuid(), rigId: null })).toBeNull();
-  });
-});
-
-describe('a long record', () => {
-  test('comes as means of readings in succession, missing ones left out of both', async () => {
-    const runId = study.runs[2]!.id;
-    const mapping = { ...plain, missingMarks: ['-'] };
-    const done = await send(
-      table(1000, (i) => `${i * 6},${i % 4 === 3 ? '-' : i}`),
-      { runId, mapping },
-    );
-    expect(done.kept).toBe(1000);
-    const of = { labId: lab.labId, runId, readout: 'x' };
-    const all = await recordOfRun(db, { ...of, count: 1000, most: 1000 });
-    expect(all.each).toBe(1);
-    expect(all.values.slice(0, 4)).toEqual([0, 1, 2, null]);
-    const means = await recordOfRun(db, { ...of, count: 1000, most: 250 });
-    expect(means.each).toBe(4);
-    expect(means.minutes).toHaveLength(250);
-    means.values.forEach((v, i) => {
-      expect(v).toBeCloseTo(4 * i + 1, 9);
-    });
-    // The mean of the times of those that have a value: 0, 6 and 12 s of each 24 s.
-    expect(means.minutes[10]).toBeCloseTo((240 + 6) / 60, 9);
   });
 });
