@@ -83,7 +83,10 @@ export function gapConflicts(move: Move): Conflict[] {
     const which = gap.before === own ? 'the run after it' : 'the run before it';
     if (elapsed < gap.gapMin * MINUTE) {
       const left = elapsed <= 0 ? 'no time' : `only ${durationWords(elapsed)}`;
-      const text = `It leaves ${left} to ${which}; the wash-out takes ${durationWords(gap.gapMin * MINUTE)}.`;
+      const text =
+        gap.gapMin > 0
+          ? `It leaves ${left} to ${which}; the wash-out takes ${durationWords(gap.gapMin * MINUTE)}.`
+          : `It runs into ${which} of the same preparation.`;
       found.push({ code: 'gap-short', text });
     } else if (gap.gapMax !== undefined && elapsed > gap.gapMax * MINUTE) {
       const text = `It leaves ${durationWords(elapsed)} to ${which}; at most ${durationWords(gap.gapMax * MINUTE)} may pass.`;
