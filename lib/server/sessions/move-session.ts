@@ -138,12 +138,13 @@ async function writeMove(
     .update(run)
     .set({ plannedStart: stay.from, plannedEnd: stay.to })
     .where(eq(run.id, locked.run.id));
-  const seconds = Math.round(shiftMs / 1000);
+  // To the millisecond, as sessions are: a window rounded off would refuse the run's next move.
+  const microseconds = shiftMs * 1000;
   await tx
     .update(visit)
     .set({
-      earliest: sql`${visit.earliest} + interval ${seconds} second`,
-      latest: sql`${visit.latest} + interval ${seconds} second`,
+      earliest: sql`${visit.earliest} + interval ${microseconds} microsecond`,
+      latest: sql`${visit.latest} + interval ${microseconds} microsecond`,
     })
     .where(and(eq(visit.runId, locked.run.id), eq(visit.labId, member.labId)));
 }
