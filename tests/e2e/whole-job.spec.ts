@@ -182,7 +182,7 @@ async function onset(page: Page, studyId: string): Promise<void> {
   expect(Number(low), name).toBeLessThan(trueOnset);
   expect(Number(high), name).toBeGreaterThan(trueOnset);
   await expect(page.getByRole('heading', { name: /^The onset .* prediction\.$/ })).toBeVisible();
-  await expect(page.getByText(/observed at .* predicted at .* mmol/)).toBeVisible();
+  await expect(page.getByText(/ observed at .*, predicted at /)).toBeVisible();
 }
 
 /** The next levels replace what has not begun; the head is asked where they leave the envelope. */
