@@ -26,6 +26,8 @@ type Props = {
   open: OpenSpan[];
   onMove: (session: CalendarSession, startsAt: string) => void;
   onOpen: (session: CalendarSession) => void;
+  /** a day's name or its "5 more" was pressed; the date in the lab's zone */
+  onDay: (date: string) => void;
 };
 
 /** A drop on a day of the month keeps the time of day. */
@@ -51,7 +53,7 @@ function blocksOf(zone: string) {
 
 /** The lab's sessions by day, week or month, in the lab's zone; blocks are dragged to move them. */
 export function SessionCalendar(props: Props) {
-  const { sessions, zone, view, date, open, onMove, onOpen } = props;
+  const { sessions, zone, view, date, open, onMove, onOpen, onDay } = props;
   const localizer = useMemo(() => {
     Settings.defaultZone = zone;
     Settings.defaultLocale = 'en-GB';
@@ -80,7 +82,8 @@ export function SessionCalendar(props: Props) {
       step={STEP_MINUTES}
       timeslots={ROWS_AN_HOUR}
       dayLayoutAlgorithm="no-overlap"
-      popup
+      doShowMoreDrillDown
+      onDrillDown={(day) => onDay(DateTime.fromJSDate(day, { zone }).toISODate() ?? date)}
       resizable={false}
       draggableAccessor={(event) => event.session.movable}
       tooltipAccessor={() => ''}

@@ -131,6 +131,7 @@ export function CalendarRoom(props: Props) {
               date={DateTime.fromISO(date, { zone }).plus({ hours: 12 }).toISO() ?? date}
               onMove={move}
               onOpen={(s) => router.push(`/sessions/${s.id}`)}
+              onDay={(d) => router.push(address({ ...props, view: 'day', date: d }))}
             />
           </div>
         </ScrollRegion>

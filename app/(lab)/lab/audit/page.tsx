@@ -1,10 +1,11 @@
 import { and, desc, eq, lt } from 'drizzle-orm';
 import type { Metadata } from 'next';
-import { type Column, DataTable, ForbiddenState, KeyLink } from '@/components/ui';
+import { type Column, DataTable, KeyLink } from '@/components/ui';
 import { auditEvent, study, user } from '@/db/schema';
 import { stampText } from '@/lib/format';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
+import { NotYours } from '../_components/not-yours';
 
 export const metadata: Metadata = { title: 'Audit trail' };
 
@@ -38,7 +39,13 @@ export default async function AuditPage({
 }) {
   const member = await pageMember();
   if (!may(member, 'see audit')) {
-    return <ForbiddenState title="Not yours to see" who="The lab head reads the audit trail." />;
+    return (
+      <NotYours
+        member={member}
+        title="Not yours to see"
+        who="The lab head reads the audit trail."
+      />
+    );
   }
   const before = new Date((await searchParams).before ?? '');
   const rows = await database()

@@ -1,10 +1,10 @@
 import type { Metadata } from 'next';
-import { ForbiddenState } from '@/components/ui';
 import { absences, hoursOfLab, people, rigs } from '@/db/queries/people';
 import { stampText } from '@/lib/format';
 import { explainHours } from '@/lib/planner/lay-out/explain-hours';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
+import { NotYours } from '../_components/not-yours';
 import { AbsenceEditor } from './_components/absence-editor';
 import { HoursEditor } from './_components/hours-editor';
 
@@ -14,7 +14,9 @@ export const metadata: Metadata = { title: 'Hours' };
 export default async function HoursPage() {
   const member = await pageMember();
   if (!may(member, 'manage hours')) {
-    return <ForbiddenState title="Not yours to change" who="The lab head manages hours." />;
+    return (
+      <NotYours member={member} title="Not yours to change" who="The lab head manages hours." />
+    );
   }
   const db = database();
   const of = { labId: member.labId };

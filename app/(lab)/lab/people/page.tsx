@@ -1,8 +1,8 @@
 import type { Metadata } from 'next';
-import { ForbiddenState } from '@/components/ui';
 import { people } from '@/db/queries/people';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
+import { NotYours } from '../_components/not-yours';
 import { PeopleEditor } from './_components/people-editor';
 
 export const metadata: Metadata = { title: 'People' };
@@ -10,7 +10,9 @@ export const metadata: Metadata = { title: 'People' };
 export default async function PeoplePage() {
   const member = await pageMember();
   if (!may(member, 'manage people')) {
-    return <ForbiddenState title="Not yours to change" who="The lab head manages people." />;
+    return (
+      <NotYours member={member} title="Not yours to change" who="The lab head manages people." />
+    );
   }
   const staff = await people(database(), { labId: member.labId });
   return (

@@ -1,8 +1,8 @@
 import type { Metadata } from 'next';
-import { ForbiddenState } from '@/components/ui';
 import { rigs } from '@/db/queries/people';
 import { database } from '@/lib/server/database';
 import { may, pageMember } from '@/lib/server/member';
+import { NotYours } from '../_components/not-yours';
 import { RigForm } from './_components/rig-form';
 
 export const metadata: Metadata = { title: 'Rigs' };
@@ -10,7 +10,9 @@ export const metadata: Metadata = { title: 'Rigs' };
 export default async function RigsPage() {
   const member = await pageMember();
   if (!may(member, 'manage rigs')) {
-    return <ForbiddenState title="Not yours to change" who="The lab head manages rigs." />;
+    return (
+      <NotYours member={member} title="Not yours to change" who="The lab head manages rigs." />
+    );
   }
   const all = await rigs(database(), { labId: member.labId });
   return (
