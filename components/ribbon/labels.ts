@@ -90,7 +90,8 @@ function predictedBeside(
   const taken = pointers.map((at) => ({ from: at - POINTER + 6, to: at + POINTER - 6 }));
   const candidates = data.onsets.map((onset, i) => {
     const figures = predictedFigures(onset, 'page');
-    const full = `${i === 0 ? 'predicted ' : ''}${figures} ${unit}${i === 0 ? stale : ''}`.trim();
+    const named = `${i === 0 ? 'predicted ' : ''}${figures} ${unit}`.trim();
+    const full = i === 0 ? named + stale : named;
     const at = x(onset.value);
     const brief = figures.split(' ')[0] ?? figures;
     return [full, figures, brief].flatMap((text): Text[] => [

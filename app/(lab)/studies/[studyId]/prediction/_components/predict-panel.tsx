@@ -1,7 +1,7 @@
 'use client';
 
 import { useRouter } from 'next/navigation';
-import { type ReactNode, useCallback, useState } from 'react';
+import { type ReactNode, useCallback, useEffect, useState } from 'react';
 import { cancelJob } from '@/app/(lab)/jobs-actions';
 import { ActionProblem, NumberField, useAction, useJob } from '@/components/forms';
 import { Key, LoadingRibbon, Plate } from '@/components/ui';
@@ -55,7 +55,7 @@ export function PredictPanel(props: PanelProps) {
   return (
     <>
       {props.children}
-      <AskForm {...props} onAsked={setAsked} />
+      <AskForm {...props} onAsked={setAsked} returned={over !== null} />
     </>
   );
 }
@@ -93,7 +93,13 @@ function Working(props: WorkingProps) {
   );
 }
 
-function AskForm(props: PanelProps & { onAsked: (jobId: string) => void }) {
+type AskProps = PanelProps & {
+  onAsked: (jobId: string) => void;
+  /** a calculation has just ended here */
+  returned: boolean;
+};
+
+function AskForm(props: AskProps) {
   const { studyId, systemNumber, keyKind, keyName, onAsked } = props;
   const [draws, setDraws] = useState(String(props.draws));
   const [seed, setSeed] = useState(String(props.seed));
@@ -101,6 +107,13 @@ function AskForm(props: PanelProps & { onAsked: (jobId: string) => void }) {
   const { run, pending, problem } = useAction(askPrediction, {
     onDone: ({ jobId }) => onAsked(jobId),
   });
+  const { returned } = props;
+  useEffect(() => {
+    // The key that held the focus, Cancel, is gone; whoever works by keyboard goes on from here.
+    if (returned && document.activeElement === document.body) {
+      document.getElementById('predict')?.focus({ preventScroll: true });
+    }
+  }, [returned]);
   const submit = async () => {
     const number = (text: string) => (text.trim() === '' ? undefined : Number(text));
     const wanted = { studyId, systemNumber, draws: number(draws), seed: number(seed) };
@@ -140,7 +153,7 @@ function AskForm(props: PanelProps & { onAsked: (jobId: string) => void }) {
         same seed gives the same answer.
       </p>
       <div>
-        <Key kind={keyKind} type="submit" pending={pending}>
+        <Key id="predict" kind={keyKind} type="submit" pending={pending}>
           {pending ? 'Asking' : keyName}
         </Key>
       </div>

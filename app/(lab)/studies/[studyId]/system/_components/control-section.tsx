@@ -1,6 +1,7 @@
 'use client';
 
 import { Key, Plate } from '@/components/ui';
+import { unitText } from '@/lib/format';
 import { Cell, CellProblem, Labelled, RemoveKey, SelectCell } from './cell';
 import {
   type DoseMapDraft,
@@ -78,7 +79,9 @@ function DoseMapFields(props: SectionProps & { doseLabel: string; doseUnit: stri
   return (
     <div className="mt-4 border-t border-rule pt-4">
       <div className="grid gap-3 tablet:grid-cols-3">
-        <Labelled title={`From dose (${doseLabel}, ${doseUnit}) to control`}>
+        <Labelled
+          title={`From dose (${[doseLabel, unitText(doseUnit)].filter(Boolean).join(', ')}) to control`}
+        >
           <SelectCell
             at={`${at}.kind`}
             label="Dose map"

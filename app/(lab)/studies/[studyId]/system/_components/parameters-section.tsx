@@ -58,7 +58,7 @@ export function ParametersSection({ draft, change, problemAt }: SectionProps) {
                   />
                 </Labelled>
               </div>
-              <div className="self-end">
+              <div className="pt-5">
                 <RemoveKey
                   what={name}
                   press={() => change({ parameters: draft.parameters.filter((_, j) => j !== i) })}
