@@ -80,7 +80,8 @@ async function onCalendar(page: Page, laid: SessionRow[]): Promise<void> {
   await expect(item).toContainText(first.person);
   await expect(item).toContainText('Flow reactor 1');
   await openCalendar(page, 'Week');
-  const block = page.getByText(`${title}, run ${first.run}`).first();
+  const blocks = page.locator('.rbc-event').filter({ hasText: title });
+  const block = blocks.filter({ hasText: `run ${first.run},` }).first();
   await page.locator('.rbc-calendar').waitFor();
   if ((await block.count()) === 0) await nextWeek(page);
   await expect(block).toBeAttached();
