@@ -17,14 +17,14 @@ export async function shiftWindows(
   setAt: Date | null,
   way: 'with it' | 'back' = 'with it',
 ): Promise<void> {
-  const late = Math.round(lateBy(r, setAt) / 1000);
+  const late = lateBy(r, setAt);
   if (late === 0) return;
-  const seconds = way === 'back' ? -late : late;
+  const microseconds = (way === 'back' ? -late : late) * 1000;
   await tx
     .update(visit)
     .set({
-      earliest: sql`${visit.earliest} + interval ${seconds} second`,
-      latest: sql`${visit.latest} + interval ${seconds} second`,
+      earliest: sql`${visit.earliest} + interval ${microseconds} microsecond`,
+      latest: sql`${visit.latest} + interval ${microseconds} microsecond`,
     })
     .where(and(eq(visit.runId, r.id), eq(visit.labId, r.labId)));
 }
