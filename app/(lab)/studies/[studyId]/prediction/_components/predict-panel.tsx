@@ -55,7 +55,12 @@ export function PredictPanel(props: PanelProps) {
   return (
     <>
       {props.children}
-      <AskForm {...props} onAsked={setAsked} returned={over !== null} />
+      <AskForm
+        key={`${props.draws} ${props.seed}`}
+        {...props}
+        onAsked={setAsked}
+        returned={over !== null}
+      />
     </>
   );
 }
