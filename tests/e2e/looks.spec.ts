@@ -4,13 +4,18 @@ import { idIn, pageOf, person } from './support/people';
 
 const WCAG = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'];
 /**
- * react-big-calendar writes its grid of roles itself: rows without cells, cells outside of rows, and
- * scrolling boxes that take no focus. None of it can be set from outside; the list view holds all of
- * it in our own markup, and that is checked in full.
+ * react-big-calendar writes its grid of roles itself and gives no way to set them: a column's head
+ * stands in a button instead of a row, and rows of the month hold buttons. A block is as high as its
+ * session is long (WCAG 2.5.8 excepts what is essential), so a quarter of an hour is under 24 px. The
+ * list view holds the same sessions in our own markup, and is checked by every rule.
  */
-const CALENDAR = '.rbc-calendar';
+const CALENDAR = {
+  wait: '.rbc-calendar',
+  rules: ['aria-required-parent', 'aria-required-children', 'target-size'],
+};
+type Except = typeof CALENDAR;
 
-const pages: { path: string; except?: string }[] = [
+const pages: { path: string; except?: Except }[] = [
   { path: '/today' },
   { path: '/studies' },
   { path: '/studies/new' },
@@ -64,20 +69,19 @@ const rounds = [
   { size: 'tablet', scheme: 'light', width: 820, height: 1180, rules: 'all' },
 ] as const;
 
-async function violations(page: Page, rules: 'all' | 'colour', except?: string) {
+async function violations(page: Page, rules: 'all' | 'colour', except?: Except) {
   const axe = new AxeBuilder({ page });
-  if (except) axe.exclude(except);
-  if (rules === 'all') axe.withTags(WCAG);
+  if (rules === 'all') axe.withTags(WCAG).disableRules(except?.rules ?? []);
   else axe.withRules(['color-contrast', 'link-in-text-block']);
   const { violations: found } = await axe.analyze();
   return found.map((v) => `${v.id}: ${v.nodes.map((n) => n.target.join(' ')).join(', ')}`);
 }
 
-async function expectGood(page: Page, path: string, except?: string): Promise<void> {
+async function expectGood(page: Page, path: string, except?: Except): Promise<void> {
   const found = complaints(page);
   await page.setViewportSize({ width: 1440, height: 900 });
   await page.goto(path, { waitUntil: 'networkidle' });
-  if (except) await page.locator(except).waitFor();
+  if (except) await page.locator(except.wait).waitFor();
   for (const { size, scheme, width, height, rules } of rounds) {
     await page.setViewportSize({ width, height });
     await page.emulateMedia({ colorScheme: scheme, reducedMotion: 'reduce' });
