@@ -16,6 +16,8 @@ const LEVEL_MS = 100 * 60_000;
 type Done = { run: number; dose: number };
 
 test('a study goes all the way round, by its roles', async ({ browser }) => {
+  // One minute and a half on a machine of its own; three calculations wait for a busy one's turn.
+  test.setTimeout(600_000);
   const head = await pageOf(browser, person('head'));
   const investigator = await pageOf(browser, person('investigator'));
   await test.step('the head gives the technician hours', () =>
