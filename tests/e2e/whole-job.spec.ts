@@ -16,7 +16,7 @@ const LEVEL_MS = 100 * 60_000;
 type Done = { run: number; dose: number };
 
 test('a study goes all the way round, by its roles', async ({ browser }) => {
-  // One minute and a half on a machine of its own; three calculations wait for a busy one's turn.
+  // Four calculations, some thirty pages: a busy machine may take its time.
   test.setTimeout(600_000);
   const head = await pageOf(browser, person('head'));
   const investigator = await pageOf(browser, person('investigator'));
