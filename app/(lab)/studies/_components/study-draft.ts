@@ -44,9 +44,13 @@ export function problemsByField(error: z.ZodError): Record<string, string> {
 export const refusalByField = (problem: Problem | null): Record<string, string> =>
   problem?.at ? { [problem.at]: [problem.message, problem.mend].filter(Boolean).join(' ') } : {};
 
-/** Moves the focus to the first field that has a problem, in the order of the page. */
-export function focusFirstProblem(form: HTMLFormElement | null) {
+const MOST_FRAMES = 60;
+
+/** Moves the focus to the first field that has a problem, once one is drawn, in the order of the page. */
+export function focusFirstProblem(form: HTMLFormElement | null, frames = MOST_FRAMES) {
   requestAnimationFrame(() => {
-    form?.querySelector<HTMLElement>('[aria-invalid="true"]')?.focus();
+    const first = form?.querySelector<HTMLElement>('[aria-invalid="true"]');
+    if (first) first.focus();
+    else if (frames > 0) focusFirstProblem(form, frames - 1);
   });
 }

@@ -1,6 +1,6 @@
 'use client';
 
-import { useRef } from 'react';
+import { useEffect, useRef } from 'react';
 import { ActionProblem, FormProblem, TextArea, TextField } from '@/components/forms';
 import { Key, Plate } from '@/components/ui';
 import type { FieldProblem } from '@/lib/contracts/forms/system';
@@ -18,6 +18,10 @@ export function SystemForm({ doseLabel, doseUnit, ...start }: Props) {
   const form = useRef<HTMLFormElement>(null);
   const held = useSystemForm(start);
   const { draft, change, found, problem, pending, saved, reason } = held;
+  // Once they are drawn, not when the answer comes: a busy tablet may need a while in between.
+  useEffect(() => {
+    if (found.length > 0) focusProblem(form.current);
+  }, [found]);
   const problemAt = finder(found);
   const section = { draft, change, problemAt };
   return (
@@ -27,7 +31,7 @@ export function SystemForm({ doseLabel, doseUnit, ...start }: Props) {
       className="flex flex-col gap-6"
       onSubmit={(event) => {
         event.preventDefault();
-        void held.submit().then(() => focusProblem(form.current));
+        void held.submit();
       }}
     >
       <NameSection {...section} />
@@ -69,10 +73,7 @@ function finder(problems: FieldProblem[]) {
 }
 
 function focusProblem(form: HTMLFormElement | null) {
-  requestAnimationFrame(() => {
-    const first = form?.querySelector<HTMLElement>('[aria-invalid="true"], [data-problems]');
-    first?.focus();
-  });
+  form?.querySelector<HTMLElement>('[aria-invalid="true"], [data-problems]')?.focus();
 }
 
 /** All that has to be mended, each line leading to its field. */
