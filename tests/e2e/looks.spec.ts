@@ -81,6 +81,8 @@ async function expectGood(page: Page, path: string, except?: Except): Promise<vo
   const found = complaints(page);
   await page.setViewportSize({ width: 1440, height: 900 });
   await page.goto(path, { waitUntil: 'networkidle' });
+  // A page that is not there is drawn by the browser; until then its document says no language.
+  await page.locator('html[lang]').waitFor();
   if (except) await page.locator(except.wait).waitFor();
   for (const { size, scheme, width, height, rules } of rounds) {
     await page.setViewportSize({ width, height });
