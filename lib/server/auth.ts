@@ -7,7 +7,7 @@ import { z } from 'zod';
 import { user } from '@/db/schema';
 import { database } from './database';
 import { env } from './env';
-import { limitAttempts } from './rate-limit';
+import { forgetAttempts, limitAttempts } from './rate-limit';
 
 const credentials = z.object({
   email: z.string().trim().toLowerCase().max(254),
@@ -32,6 +32,7 @@ async function signIn(raw: unknown) {
     () => false,
   );
   if (!found || !matches) return null;
+  await forgetAttempts(database(), `sign-in:${email}`);
   return { id: found.id, name: found.name, email: found.email, version: found.sessionVersion };
 }
 

@@ -21,3 +21,8 @@ export async function limitAttempts(
   const [row] = await db.select().from(rateCount).where(eq(rateCount.key, short)).limit(1);
   return (row?.count ?? 1) <= most;
 }
+
+/** Forgets the attempts on a key: what succeeded was no attack. */
+export async function forgetAttempts(db: Conn, key: string): Promise<void> {
+  await db.delete(rateCount).where(eq(rateCount.key, key.slice(0, 160)));
+}

@@ -85,30 +85,40 @@ export async function deliverNext(
       .limit(1)
       .for('update', { skipLocked: true });
     if (!row) return 'idle';
-    const why = await expired(tx, row, now);
-    if (why === 'busy') {
-      const dueAt = new Date(now.getTime() + BUSY_MS);
-      await tx.update(outbox).set({ dueAt }).where(eq(outbox.id, row.id));
-      return 'later';
-    }
-    if (why) {
-      await tx.update(outbox).set({ state: 'dead', error: why }).where(eq(outbox.id, row.id));
-      return 'dead';
-    }
-    const attempts = row.attempts + 1;
-    const messageId = messageIdOf(row.slot);
     try {
-      await sendOne(tx, transport, row, now);
-      await tx
-        .update(outbox)
-        .set({ state: 'sent', sentAt: now, attempts, messageId, error: null })
-        .where(eq(outbox.id, row.id));
-      return 'sent';
+      return await settle(tx, transport, row, now);
     } catch (error) {
+      // Whatever went wrong with this row, the ones behind it must not wait for it.
       const text = error instanceof Error ? error.message : String(error);
-      return postpone(tx, row, attempts, text, now);
+      return postpone(tx, row, row.attempts + 1, text, now);
     }
   });
+}
+
+/** What becomes of a claimed row: sent, put off while its session is being changed, or dead. */
+async function settle(
+  tx: Transaction,
+  transport: Transporter,
+  row: OutboxRow,
+  now: Date,
+): Promise<'sent' | 'dead' | 'later'> {
+  const why = await expired(tx, row, now);
+  if (why === 'busy') {
+    const dueAt = new Date(now.getTime() + BUSY_MS);
+    await tx.update(outbox).set({ dueAt }).where(eq(outbox.id, row.id));
+    return 'later';
+  }
+  if (why) {
+    await tx.update(outbox).set({ state: 'dead', error: why }).where(eq(outbox.id, row.id));
+    return 'dead';
+  }
+  await sendOne(tx, transport, row, now);
+  const messageId = messageIdOf(row.slot);
+  await tx
+    .update(outbox)
+    .set({ state: 'sent', sentAt: now, attempts: row.attempts + 1, messageId, error: null })
+    .where(eq(outbox.id, row.id));
+  return 'sent';
 }
 
 async function postpone(
