@@ -10,21 +10,24 @@ import { chemostat } from '@/lib/sim/library/chemostat';
 import type { Stage } from './stage';
 
 /**
- * What the paper's text says of single dilution rates (Fussmann et al. 2000, Science 290:1358):
- * steady from the slowest flow up to 0.32 /d, cycles from 0.64 /d, at 1.16 /d one trial cycled and one
- * did not, and none cycled at the fastest flow, 1.37 /d. Rates that only a figure shows are left out.
+ * Calls that follow from the paper's statements (Fussmann et al. 2000, Science 290:1358): dilution rates
+ * from 0.04 to 1.37 /d, steady up to 0.32 /d, cycles from 0.64 /d and lost near 1.16 /d, where one trial
+ * cycled and one did not. The calls at both ends of the range are inferred from that, and say so.
  */
 const OBSERVED = [
-  { control: 0.04, verdict: 'steady', preparation: 'trial 1' },
-  { control: 0.32, verdict: 'steady', preparation: 'trial 2' },
-  { control: 0.64, verdict: 'sustained', preparation: 'trial 3' },
-  { control: 1.16, verdict: 'sustained', preparation: 'trial 4' },
-  { control: 1.16, verdict: 'steady', preparation: 'trial 5' },
-  { control: 1.37, verdict: 'steady', preparation: 'trial 6' },
+  { control: 0.04, verdict: 'steady', preparation: 'trial 1', inferred: true },
+  { control: 0.32, verdict: 'steady', preparation: 'trial 2', inferred: false },
+  { control: 0.64, verdict: 'sustained', preparation: 'trial 3', inferred: false },
+  { control: 1.16, verdict: 'sustained', preparation: 'trial 4', inferred: false },
+  { control: 1.16, verdict: 'steady', preparation: 'trial 5', inferred: false },
+  { control: 1.37, verdict: 'steady', preparation: 'trial 6', inferred: true },
 ] as const;
 
 const SOURCE =
   'As published: Fussmann et al. 2000, Science 290:1358. No readings are kept here, so nothing was computed.';
+
+const INFERRED =
+  'Inferred from the published onsets (Fussmann et al. 2000, Science 290:1358: steady up to 0.32 /d, cycles lost near 1.16 /d), not stated for this rate. No readings are kept here.';
 
 /** The published chemostat: both edges predicted, the published calls entered beside them. */
 export async function stageChemostat(stage: Stage, now: Date): Promise<void> {
@@ -125,7 +128,7 @@ export async function stageChemostat(stage: Stage, now: Date): Promise<void> {
       runId,
       kind: 'published',
       verdict: o.verdict,
-      reason: SOURCE,
+      reason: o.inferred ? INFERRED : SOURCE,
       byId: by.member.userId,
       createdAt: now,
     });

@@ -84,7 +84,8 @@ async function published(studyId: string, trials: [control: number, verdict: Ver
 
 describe('the published chemostat', () => {
   // Fussmann, Ellner, Shertzer & Hairston 2000, Science 290:1358-1360: equilibria up to a dilution of
-  // 0.32 per day, cycles from 0.64, one of two trials at 1.16 cycling, none above.
+  // 0.32 per day, cycles from 0.64, lost near 1.16, where one trial of two cycled. The ends of the range, 0.04
+  // and 1.37, are inferred from that.
   test('brackets both onsets, and the lower one differs from its prediction', async () => {
     const { studyId } = await predictedStudy(db, lab, {
       model: chemostat.model,
